@@ -63,10 +63,12 @@ type Temperatures struct{ Switch, Rectifier, Inductor float64 }
 // only Point, Vout, State, Part and the reason stand.
 type Budget struct {
 	Point
-	Vout   float64
-	State  State
-	Part   string // of a runaway: the part that runs away
-	reason reason
+	Vout    float64
+	State   State
+	Part    string // of a runaway: the part that runs away
+	reason  reason
+	current float64 // A, that a reason speaks of
+	model   *Model
 
 	Mode          Mode
 	Duty          float64 // share of the period in which the switch conducts
@@ -84,7 +86,11 @@ type Budget struct {
 	Temperatures  Temperatures
 	Items         []Item
 	Iterations    int     // evaluations of all losses it took
-	Residual      float64 // how far the answer may still be: the larger of W/loss and K
+	Residual      float64 // how far the answer may still be: the larger share of the loss or of a temperature in kelvin
+
+	slope   float64    // A/s, of the recovering current
+	gains   [3]float64 // thermal gain of switch, rectifier, inductor
+	plateau float64    // V, of the switch at its peak current
 }
 
 // Level is the weight of a finding.

@@ -1,0 +1,142 @@
+package budget
+
+import (
+	"math"
+	"sync"
+)
+
+// scratch holds what one evaluation of a point needs; a pool keeps At free of
+// allocation whoever calls it.
+var scratch = sync.Pool{New: func() any { return new(situation) }}
+
+// At fills b with what flows, what is lost and how hot the parts become at p. A
+// Budget used again costs no allocation. The point must be one that ValidatePoints
+// accepts.
+func (m *Model) At(p Point, b *Budget) {
+	s := scratch.Get().(*situation)
+	defer scratch.Put(s)
+	*s = situation{m: m, frame: m.frameAt(p)}
+	b.reset(m, p)
+	if reason := m.topology.Reach(p.Vin, m.vout); reason != "" {
+		b.State, b.reason = OutOfReach, reasonRatio
+		return
+	}
+	if a := m.settle(s, false); a.settled {
+		if part := m.impossible(s); part != noHeat {
+			b.State, b.reason, b.Part = Runaway, reasonImpossible, partNames[part]
+			return
+		}
+		if part := s.tooHot(); part != noHeat {
+			b.State, b.reason, b.Part = Runaway, reasonHot, partNames[part]
+			return
+		}
+		b.book(s, a)
+		return
+	}
+	b.unsettled(s)
+}
+
+// settle tries the modes in their order. Discontinuous conduction, where it may be,
+// stands if the current ends within the period; continuous, if it doesn't dip below
+// zero where the rectifier can't let it.
+func (m *Model) settle(s *situation, held bool) answer {
+	count := 0
+	if !m.forced {
+		s.mode = DCM
+		a := newProblem(s, held).solve()
+		if a.settled && s.flow.D1+s.flow.D2 < 1 {
+			return a
+		}
+		count = a.iterations
+	}
+	s.mode = CCM
+	a := newProblem(s, held).solve()
+	a.iterations += count
+	if a.settled && !m.forced && s.flow.Min < -1e-6*s.il {
+		a.settled, a.wrong = false, currentReverse
+	}
+	return a
+}
+
+// unsettled tells out of reach from running away: whether there would be a solution
+// if the parts stayed at ambient.
+func (b *Budget) unsettled(s *situation) {
+	m := s.m
+	last := *s
+	cold := m.settle(s, true)
+	if !cold.settled {
+		b.State, b.reason = OutOfReach, reasonOf[cold.wrong]
+		b.current = math.Max(s.flow.Max, 0)
+		return
+	}
+	b.State, b.reason = Runaway, reasonNoBalance
+	if part := m.impossible(&last); part != noHeat {
+		b.reason, b.Part = reasonImpossible, partNames[part]
+		return
+	}
+	b.Part = partNames[m.greatestGain(&last, s)]
+}
+
+// impossible returns the part whose model has left its meaning: a threshold, a slope
+// or a core's temperature factor below zero; noHeat if none has.
+func (m *Model) impossible(s *situation) heat {
+	switch {
+	case !m.sync && (s.forwardVolt < 0 || s.forwardOhm < 0):
+		return rectifierHeat
+	case m.core.Known() && s.coreFactor < 0:
+		return inductorHeat
+	}
+	return noHeat
+}
+
+func (s *situation) tooHot() heat {
+	part := noHeat
+	for i, t := range s.temperature {
+		if t > hottest && (part == noHeat || t > s.temperature[part]) {
+			part = heat(i)
+		}
+	}
+	return part
+}
+
+var partNames = [3]string{"switch", "rectifier", "inductor"}
+
+// gains returns (theta_ja + enclosure_theta)·dP/dT of the parts with the currents
+// held: 1 is where a part heats itself as fast as it can shed heat.
+func (m *Model) gains(s *situation) [3]float64 {
+	const h = 1e-3 // K
+	var gains [3]float64
+	for part := range gains {
+		var heat [2]float64
+		for side, sign := range [2]float64{-1, 1} {
+			probe := *s
+			t := s.temperature
+			t[part] += sign * h
+			if probe.warm(t) != sound || probe.account() != sound {
+				gains[part] = math.Inf(1)
+				break
+			}
+			heat[side] = probe.heat[part]
+		}
+		if !math.IsInf(gains[part], 1) {
+			gains[part] = (m.theta[part] + m.enclosure) * (heat[1] - heat[0]) / (2 * h)
+		}
+	}
+	return gains
+}
+
+// greatestGain names the part that runs away: that with the greatest gain at the
+// last iterate, or cold where that iterate was beyond any number.
+func (m *Model) greatestGain(last, cold *situation) heat {
+	s := last
+	if s.loss == 0 || math.IsInf(s.loss, 0) {
+		s = cold
+	}
+	part, gains := switchHeat, m.gains(s)
+	for i, g := range gains {
+		if g > gains[part] {
+			part = heat(i)
+		}
+	}
+	return part
+}

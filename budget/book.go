@@ -1,0 +1,44 @@
+package budget
+
+import "math"
+
+// reset empties a budget for a new point; its items keep their room.
+func (b *Budget) reset(m *Model, p Point) {
+	*b = Budget{Point: p, Vout: m.vout, model: m, Items: b.Items[:0]}
+}
+
+// book writes a settled situation into the budget. The input current is what the
+// items at the solution draw, so that energy closes to rounding.
+func (b *Budget) book(s *situation, a answer) {
+	m, f := s.m, &s.frame
+	b.State, b.Mode = Settled, s.mode
+	b.Duty, b.OnTime = s.flow.D1, s.flow.OnTime
+	b.Inductor = Current{Mean: s.il, Min: s.flow.Min, Max: s.flow.Max, RMS: math.Sqrt(s.inductor.MeanSquare())}
+	b.SwitchRMS, b.RectifierRMS = math.Sqrt(s.sw.MeanSquare()), math.Sqrt(s.re.MeanSquare())
+	b.RectifierMean = s.re.Mean()
+	b.InputCapRMS, b.OutputCapRMS = math.Sqrt(s.inputAC), math.Sqrt(s.outputAC)
+	b.Temperatures = Temperatures{s.temperature[0], s.temperature[1], s.temperature[2]}
+	b.bookItems(s)
+	b.Pout = m.vout * f.Iout
+	b.Pin = b.Pout + b.Loss
+	if b.Pin > 0 {
+		b.Efficiency = b.Pout / b.Pin
+	}
+	is := (m.vout*f.io + s.stage) / f.Vin
+	b.Iin = is + (m.fedFromInput(f)+inputESR(s, nil))/f.Vin
+	b.Iterations, b.Residual = a.iterations, a.residual
+	b.slope = s.slope
+	b.gains = m.gains(s)
+	b.plateau = s.off.Plateau
+}
+
+func (b *Budget) bookItems(s *situation) {
+	b.Loss = 0
+	for i := range s.m.entries {
+		e := &s.m.entries[i]
+		b.Items = append(b.Items, Item{Part: e.part, Kind: e.kind})
+		it := &b.Items[i]
+		it.Power = e.power(s, it)
+		b.Loss += it.Power
+	}
+}

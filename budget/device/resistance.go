@@ -1,0 +1,40 @@
+package device
+
+import "math"
+
+// Resistance is the on-resistance of a MOSFET over junction temperature.
+type Resistance struct {
+	cold     float64
+	exponent float64
+	curve    Curve
+}
+
+// NewResistance returns the on-resistance that is cold (Ω, > 0) at 25 °C and
+// hotRatio (> 0) times that at 150 °C. A curve of multipliers over °C, if not
+// nil, goes before the ratio.
+func NewResistance(coldOhm, hotRatio float64, curve Curve) Resistance {
+	return Resistance{coldOhm, math.Log(hotRatio) / math.Log(hot/cold), curve}
+}
+
+// At returns the resistance in Ω at the junction temperature tj in °C,
+//
+//	R(Tj) = R_25·((Tj + 273.15)/298.15)^m,  m = ln(ratio)/ln(423.15/298.15)
+//
+// a power law of the absolute temperature through the two stated values, or
+// R_25 times the curve's multiplier, held flat beyond its rows (outside). tj must
+// be above −273.15. Source: the power law is common practice; mobility falls as
+// a power of absolute temperature.
+func (r Resistance) At(tj float64) (ohm float64, outside bool) {
+	if r.curve != nil {
+		k, outside := r.curve.At(tj)
+		return r.cold * k, outside
+	}
+	if r.exponent == 0 {
+		return r.cold, false
+	}
+	return r.cold * math.Exp(r.exponent*math.Log((tj+kelvin)/cold)), false
+}
+
+// Conduction returns the power in W of a current of the mean square i2 (A²)
+// through the resistance r (Ω): P = I_rms²·R.
+func Conduction(i2, r float64) float64 { return i2 * r }
