@@ -5,52 +5,68 @@ import (
 	"sync"
 )
 
-// scratch holds what one evaluation of a point needs; a pool keeps At free of
-// allocation whoever calls it.
-var scratch = sync.Pool{New: func() any { return new(situation) }}
+// desk is where one point is worked out; a pool keeps At free of allocation
+// whoever calls it.
+type desk struct {
+	problem
+	situation
+	last situation // of the attempt with heat, while one without is made
+}
+
+var desks = sync.Pool{New: func() any { return new(desk) }}
 
 // At fills b with what flows, what is lost and how hot the parts become at p. A
 // Budget used again costs no allocation. The point must be one that ValidatePoints
 // accepts.
 func (m *Model) At(p Point, b *Budget) {
-	s := scratch.Get().(*situation)
-	defer scratch.Put(s)
-	*s = situation{m: m, frame: m.frameAt(p)}
 	b.reset(m, p)
-	if reason := m.topology.Reach(p.Vin, m.vout); reason != "" {
+	if m.topology.Reach(p.Vin, m.vout) != "" {
 		b.State, b.reason = OutOfReach, reasonRatio
 		return
 	}
-	if a := m.settle(s, false); a.settled {
-		if part := m.impossible(s); part != noHeat {
-			b.State, b.reason, b.Part = Runaway, reasonImpossible, partNames[part]
-			return
-		}
-		if part := s.tooHot(); part != noHeat {
-			b.State, b.reason, b.Part = Runaway, reasonHot, partNames[part]
-			return
-		}
-		b.book(s, a)
-		return
+	d := desks.Get().(*desk)
+	defer desks.Put(d)
+	d.situation.begin(m, p)
+	if a := d.settle(false); a.settled {
+		b.conclude(&d.situation, a)
+	} else {
+		b.unsettled(d)
 	}
-	b.unsettled(s)
+}
+
+// begin clears the situation for a point.
+func (s *situation) begin(m *Model, p Point) {
+	*s = situation{m: m, frame: m.frameAt(p)}
+}
+
+// conclude books a solution, unless it is one that can't be.
+func (b *Budget) conclude(s *situation, a answer) {
+	if part := s.impossible(); part != noHeat {
+		b.State, b.reason, b.Part = Runaway, reasonImpossible, partNames[part]
+	} else if part := s.tooHot(); part != noHeat {
+		b.State, b.reason, b.Part = Runaway, reasonHot, partNames[part]
+	} else {
+		b.book(s, a)
+	}
 }
 
 // settle tries the modes in their order. Discontinuous conduction, where it may be,
 // stands if the current ends within the period; continuous, if it doesn't dip below
 // zero where the rectifier can't let it.
-func (m *Model) settle(s *situation, held bool) answer {
-	count := 0
+func (d *desk) settle(held bool) answer {
+	count, s, m := 0, &d.situation, d.situation.m
 	if !m.forced {
 		s.mode = DCM
-		a := newProblem(s, held).solve()
+		d.pose(s, held)
+		a := d.solve()
 		if a.settled && s.flow.D1+s.flow.D2 < 1 {
 			return a
 		}
 		count = a.iterations
 	}
 	s.mode = CCM
-	a := newProblem(s, held).solve()
+	d.pose(s, held)
+	a := d.solve()
 	a.iterations += count
 	if a.settled && !m.forced && s.flow.Min < -1e-6*s.il {
 		a.settled, a.wrong = false, currentReverse
@@ -60,27 +76,27 @@ func (m *Model) settle(s *situation, held bool) answer {
 
 // unsettled tells out of reach from running away: whether there would be a solution
 // if the parts stayed at ambient.
-func (b *Budget) unsettled(s *situation) {
-	m := s.m
-	last := *s
-	cold := m.settle(s, true)
+func (b *Budget) unsettled(d *desk) {
+	s := &d.situation
+	d.last = *s
+	cold := d.settle(true)
 	if !cold.settled {
 		b.State, b.reason = OutOfReach, reasonOf[cold.wrong]
 		b.current = math.Max(s.flow.Max, 0)
 		return
 	}
 	b.State, b.reason = Runaway, reasonNoBalance
-	if part := m.impossible(&last); part != noHeat {
+	if part := d.last.impossible(); part != noHeat {
 		b.reason, b.Part = reasonImpossible, partNames[part]
 		return
 	}
-	b.Part = partNames[m.greatestGain(&last, s)]
+	b.Part = partNames[s.m.greatestGain(&d.last, s)]
 }
 
 // impossible returns the part whose model has left its meaning: a threshold, a slope
 // or a core's temperature factor below zero; noHeat if none has.
-func (m *Model) impossible(s *situation) heat {
-	switch {
+func (s *situation) impossible() heat {
+	switch m := s.m; {
 	case !m.sync && (s.forwardVolt < 0 || s.forwardOhm < 0):
 		return rectifierHeat
 	case m.core.Known() && s.coreFactor < 0:

@@ -27,9 +27,7 @@ func (b *Budget) book(s *situation, a answer) {
 	is := (m.vout*f.io + s.stage) / f.Vin
 	b.Iin = is + (m.fedFromInput(f)+inputESR(s, nil))/f.Vin
 	b.Iterations, b.Residual = a.iterations, a.residual
-	b.slope = s.slope
-	b.gains = m.gains(s)
-	b.plateau = s.off.Plateau
+	b.stageLoss = s.stage
 }
 
 func (b *Budget) bookItems(s *situation) {

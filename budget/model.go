@@ -30,6 +30,7 @@ type Model struct {
 	rectifierCharge device.Charge
 
 	linkage magnetic.Linkage
+	law     stage.Linkage // the same, as the balances take it
 	winding magnetic.Winding
 	core    magnetic.Core
 	dcr     float64                     // Ω at 20 °C
@@ -150,6 +151,7 @@ func (m *Model) prepareInductor(l *Inductor) {
 		area = fitted
 	}
 	m.linkage = magnetic.NewLinkage(l.Inductance.V, l.ISat.V, l.SatDrop.V, area)
+	m.law = m.linkage
 	m.winding = windingOf(l)
 	for n := range m.factors {
 		if m.winding.ByCurve() {

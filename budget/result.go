@@ -88,9 +88,7 @@ type Budget struct {
 	Iterations    int     // evaluations of all losses it took
 	Residual      float64 // how far the answer may still be: the larger share of the loss or of a temperature in kelvin
 
-	slope   float64    // A/s, of the recovering current
-	gains   [3]float64 // thermal gain of switch, rectifier, inductor
-	plateau float64    // V, of the switch at its peak current
+	stageLoss float64 // W, from which the whole situation follows again
 }
 
 // Level is the weight of a finding.

@@ -102,9 +102,9 @@ func (s *situation) carry(stageLoss float64) fault {
 	}
 	var wrong stage.Fault
 	if s.mode == DCM {
-		s.flow, wrong = stage.Discontinuous(f.flux, branches, m.linkage, s.il)
+		s.flow, wrong = stage.Discontinuous(f.flux, branches, m.law, s.il)
 	} else {
-		s.flow, wrong = stage.Continuous(f.flux, branches, m.linkage, s.il)
+		s.flow, wrong = stage.Continuous(f.flux, branches, m.law, s.il)
 	}
 	if wrong != stage.NoFault {
 		return stageFaults[wrong]

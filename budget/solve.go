@@ -19,11 +19,11 @@ type answer struct {
 
 // problem is the fixed-point problem of one mode at one point: find x = g(x).
 type problem struct {
-	s        *situation
-	held     bool // parts stay at ambient
-	rise     [3]float64
-	evals    int
-	lastGood unknowns
+	s     *situation
+	saved situation // while slopes are probed
+	held  bool      // parts stay at ambient
+	rise  [3]float64
+	evals int
 }
 
 const (
@@ -36,13 +36,12 @@ const (
 	smallestFactor = 1e-7   // of a careful step, before it is given up
 )
 
-// newProblem poses the problem for a situation whose frame and mode are set.
-func newProblem(s *situation, held bool) *problem {
-	p := &problem{s: s, held: held}
+// pose sets the problem for a situation whose frame and mode are set.
+func (p *problem) pose(s *situation, held bool) {
+	p.s, p.held, p.evals = s, held, 0
 	for i := range p.rise {
 		p.rise[i] = s.m.theta[i] + s.m.enclosure
 	}
-	return p
 }
 
 // temperatures returns what the unknowns stand for, in °C.
@@ -114,7 +113,6 @@ func (p *problem) quick() (answer, bool) {
 	for range fastSteps {
 		step := inverse.times(r)
 		if e := p.error(step); e <= target {
-			p.lastGood = x
 			return answer{settled: true, iterations: p.evals, residual: e}, p.stable(x, r)
 		}
 		next := x.plus(step)
@@ -136,10 +134,9 @@ func (p *problem) stable(x, r unknowns) bool {
 		return true
 	}
 	const h = 1e-6
-	ahead := *p.s
-	probe := *p
-	probe.s = &ahead
-	after, wrong := probe.at(x.scaled(1 + h))
+	p.saved = *p.s
+	after, wrong := p.at(x.scaled(1 + h))
+	*p.s = p.saved
 	if wrong != sound {
 		return false
 	}
@@ -192,7 +189,6 @@ func (p *problem) careful() answer {
 
 func (p *problem) accept(x unknowns, e float64) answer {
 	p.at(x)
-	p.lastGood = x
 	return answer{settled: true, iterations: p.evals, residual: e}
 }
 
@@ -250,12 +246,12 @@ func (p *problem) limit(x, step unknowns) float64 {
 // slope returns I − G' at x by one-sided differences.
 func (p *problem) slope(x, r unknowns) matrix {
 	a := identity()
-	saved := *p.s
+	p.saved = *p.s
 	for j := range x {
 		if j > 0 && (p.held || p.rise[j-1] == 0) {
 			continue
 		}
-		h := 1e-7 * (math.Abs(x[j]) + saved.loss)
+		h := 1e-7 * (math.Abs(x[j]) + p.saved.loss)
 		if h == 0 {
 			continue
 		}
@@ -274,6 +270,6 @@ func (p *problem) slope(x, r unknowns) matrix {
 			a[i][j] = -(after[i] - r[i]) / h
 		}
 	}
-	*p.s = saved
+	*p.s = p.saved
 	return a
 }
