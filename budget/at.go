@@ -3,6 +3,9 @@ package budget
 import (
 	"math"
 	"sync"
+
+	"lossbook/budget/magnetic"
+	"lossbook/budget/stage"
 )
 
 // desk is where one point is worked out; a pool keeps At free of allocation
@@ -55,7 +58,7 @@ func (b *Budget) conclude(s *situation, a answer) {
 // zero where the rectifier can't let it.
 func (d *desk) settle(held bool) answer {
 	count, s, m := 0, &d.situation, d.situation.m
-	if !m.forced {
+	if !m.forced && !s.cannotRest() {
 		s.mode = DCM
 		d.pose(s, held)
 		a := d.solve()
@@ -72,6 +75,31 @@ func (d *desk) settle(held bool) answer {
 		a.settled, a.wrong = false, currentReverse
 	}
 	return a
+}
+
+// cannotRest proves, where it can, that discontinuous conduction can't stand: the
+// stage's loss only adds to the mean current, and no part that stands is colder than
+// ambient or hotter than any solution that counts.
+func (s *situation) cannotRest() bool {
+	m, f := s.m, &s.frame
+	least := m.topology.MeanCurrent(m.vout*f.io/f.Vin, f.io)
+	return stage.CannotRest(f.flux, m.worstBranches(f.Ambient), m.law, least)
+}
+
+// worstBranches returns the largest resistance and threshold of the off-path between
+// the ambient and the hottest temperature that counts. Each of its parts is monotone
+// in temperature, or a curve of which the largest row is taken.
+func (m *Model) worstBranches(ambient float64) stage.Branches {
+	worst := stage.Branches{Off: m.dcr*magnetic.CopperFactor(hottest) + m.seriesOff}
+	if m.sync {
+		worst.Off += m.syncResistance.Most(ambient, hottest)
+		return worst
+	}
+	coldVolt, coldOhm := m.forward.At(ambient)
+	hotVolt, hotOhm := m.forward.At(hottest)
+	worst.Threshold = math.Max(coldVolt, hotVolt)
+	worst.Off += math.Max(coldOhm, hotOhm)
+	return worst
 }
 
 // unsettled tells out of reach from running away: whether there would be a solution

@@ -2,6 +2,7 @@ package budget
 
 import (
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/interp"
 )
@@ -47,6 +48,10 @@ func (c *curve) At(x float64) (y float64, outside bool) {
 	}
 	return c.cubic.Predict(x), false
 }
+
+// Most returns the largest value, which is that of a row: the curve is monotone
+// between rows.
+func (c *curve) Most() float64 { return slices.Max(c.ys) }
 
 // Integral returns the integral of the value from 0 to x ≥ 0, for rows that begin
 // at or above 0.

@@ -125,7 +125,7 @@ func (m *Model) recoveryOf(r Recovery) device.Recovery {
 }
 
 func resistanceOf(s *MOSFET) device.Resistance {
-	var c device.Curve
+	var c device.Bounded
 	if fitted := newCurve(s.RdsOnCurve); fitted != nil {
 		c = fitted
 	}

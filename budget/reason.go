@@ -16,6 +16,7 @@ const (
 	reasonImpossible
 	reasonHot
 	reasonNoBalance
+	reasonCold
 )
 
 var reasonOf = map[fault]reason{
@@ -25,7 +26,7 @@ var reasonOf = map[fault]reason{
 	swingTooLarge:  reasonSwing,
 	plateauAtDrive: reasonPlateau,
 	currentReverse: reasonReverse,
-	tooCold:        reasonNoBalance,
+	tooCold:        reasonCold,
 	overflow:       reasonNoBalance,
 }
 
@@ -48,6 +49,8 @@ func (b *Budget) Reason() string {
 		return fmt.Sprintf("heated by its loss, the %s leaves the range of its model (a drop or factor falls below zero)", b.Part)
 	case reasonHot:
 		return fmt.Sprintf("the %s settles only above %.0f °C", b.Part, hottest)
+	case reasonCold:
+		return fmt.Sprintf("at %.4g °C the resistance of copper is outside its model", b.Ambient)
 	case reasonNoBalance:
 		return fmt.Sprintf("the %s heats itself faster than it can shed heat; a lower thermal resistance, a cooler ambient or a part with less loss would settle", b.Part)
 	}

@@ -52,7 +52,7 @@ const (
 	swingTooLarge
 	currentReverse
 	plateauAtDrive
-	tooCold  // a temperature below absolute zero: an iterate gone astray
+	tooCold  // a temperature that no model holds for: mostly an iterate gone astray
 	overflow // leakage beyond any number: a junction has run away
 )
 
@@ -85,7 +85,9 @@ func (s *situation) warm(temperature [3]float64) fault {
 			return overflow
 		}
 	}
-	s.rdcr = m.dcr * magnetic.CopperFactor(temperature[inductorHeat])
+	if s.rdcr = m.dcr * magnetic.CopperFactor(temperature[inductorHeat]); s.rdcr <= 0 {
+		return tooCold // the straight line of copper's resistance has met zero
+	}
 	s.coreFactor = m.core.Factor(temperature[inductorHeat])
 	return sound
 }

@@ -215,8 +215,7 @@ func (p *problem) advance(x, r unknowns, slope matrix, pace float64) (unknowns, 
 		step = step.scaled(p.limit(x, step))
 		after, wrong := p.at(x.plus(step))
 		if wrong == sound && (after.norm() <= 2*r.norm() || pace < 1e-3) {
-			pace *= math.Min(5, math.Max(0.5, r.norm()/after.norm()*1.5))
-			return x.plus(step), after, math.Min(pace, 1e12), sound
+			return x.plus(step), after, nextPace(pace, r, after), sound
 		}
 		if pace /= 4; pace < smallestFactor {
 			if wrong == sound {
@@ -225,6 +224,16 @@ func (p *problem) advance(x, r unknowns, slope matrix, pace float64) (unknowns, 
 			return x, r, pace, wrong
 		}
 	}
+}
+
+// nextPace lengthens the steps as the residual falls, and shortens them when it has
+// turned round: then the last step leapt over something, and without shorter ones
+// they could go to and fro for ever.
+func nextPace(pace float64, before, after unknowns) float64 {
+	if before.dot(after) < 0 {
+		return pace * math.Min(0.3, before.norm()/after.norm())
+	}
+	return math.Min(1e12, pace*math.Min(10, math.Max(0.5, 2*before.norm()/after.norm())))
 }
 
 // limit returns the factor that keeps a step within a few kelvin and a fraction of
@@ -243,6 +252,18 @@ func (p *problem) limit(x, step unknowns) float64 {
 	return factor
 }
 
+// probe returns the step of a difference: a ten-thousandth of a kelvin, or as small a
+// share of the power that flows.
+func (p *problem) probe(x unknowns, j int) float64 {
+	if j > 0 {
+		return 1e-4 / p.rise[j-1]
+	}
+	if power := p.s.m.vout*p.s.frame.io + math.Abs(x[0]); power > 0 {
+		return 1e-7 * power
+	}
+	return 1e-7 * math.Max(p.s.loss, math.SmallestNonzeroFloat64/1e-7)
+}
+
 // slope returns I − G' at x by one-sided differences.
 func (p *problem) slope(x, r unknowns) matrix {
 	a := identity()
@@ -251,10 +272,7 @@ func (p *problem) slope(x, r unknowns) matrix {
 		if j > 0 && (p.held || p.rise[j-1] == 0) {
 			continue
 		}
-		h := 1e-7 * (math.Abs(x[j]) + p.saved.loss)
-		if h == 0 {
-			continue
-		}
+		h := p.probe(x, j)
 		probe := x
 		probe[j] += h
 		h = probe[j] - x[j]

@@ -6,13 +6,19 @@ import "math"
 type Resistance struct {
 	cold     float64
 	exponent float64
-	curve    Curve
+	curve    Bounded
+}
+
+// Bounded is a curve that knows its largest value.
+type Bounded interface {
+	Curve
+	Most() float64
 }
 
 // NewResistance returns the on-resistance that is cold (Ω, > 0) at 25 °C and
 // hotRatio (> 0) times that at 150 °C. A curve of multipliers over °C, if not
 // nil, goes before the ratio.
-func NewResistance(coldOhm, hotRatio float64, curve Curve) Resistance {
+func NewResistance(coldOhm, hotRatio float64, curve Bounded) Resistance {
 	return Resistance{coldOhm, math.Log(hotRatio) / math.Log(hot/cold), curve}
 }
 
@@ -33,6 +39,17 @@ func (r Resistance) At(tj float64) (ohm float64, outside bool) {
 		return r.cold, false
 	}
 	return r.cold * math.Exp(r.exponent*math.Log((tj+kelvin)/cold)), false
+}
+
+// Most returns the largest resistance in Ω between two junction temperatures (°C), or
+// a bound above it.
+func (r Resistance) Most(from, to float64) float64 {
+	if r.curve != nil {
+		return r.cold * r.curve.Most()
+	}
+	a, _ := r.At(from)
+	b, _ := r.At(to)
+	return math.Max(a, b)
 }
 
 // Conduction returns the power in W of a current of the mean square i2 (A²)

@@ -149,3 +149,21 @@ func meanOfPeak(d Drive, b Branches, l Linkage, peak float64) (mean, slope float
 	dt += linkage * (b.On/2/(on*on) - b.Off/2/(off*off))
 	return peak / 2 * t / d.Period, (t + peak*dt) / 2 / d.Period
 }
+
+// CannotRest proves that no discontinuous flow ends within the period when the mean
+// current is at least il (A), the resistances and threshold are at most those of
+// worst, and the on-path has any resistance at all: without solving for one. Such a
+// flow would peak above 2·il, and below the current P whose linkage takes the whole
+// period to build up, so that
+//
+//	t1 + t2 ≥ λ(2·il)·[1/V_on0 + 1/(V_off0 + V_d + P/2·R_off)]
+//
+// False proves nothing.
+func CannotRest(d Drive, worst Branches, l Linkage, il float64) bool {
+	most, possible := l.Swing(0, 2*d.On*d.Period)
+	if !possible || !(d.On > 0) || il <= 0 {
+		return false
+	}
+	off := d.Off + worst.Threshold + most/2*worst.Off
+	return off > 0 && l.At(2*il)*(1/d.On+1/off) >= d.Period
+}
