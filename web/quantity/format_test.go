@@ -37,7 +37,7 @@ func TestFormat(t *testing.T) {
 		{7, "W/m³", "7 W/m³"},
 		{0, "V", "0 V"},
 		{math.Copysign(0, -1), "V", "0 V"},
-		{math.Nextafter(0.3, 1), "V", "300.00000000000006 mV"},
+		{math.Nextafter(0.3, 1), "V", "300.00000000000004 mV"},
 		{1000, "V", "1 kV"},
 		{math.Nextafter(1000, 0), "V", "999.9999999999999 V"},
 		{5e-324, "V", "5e-324 V"},
