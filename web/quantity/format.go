@@ -71,10 +71,8 @@ func (d decimal) bound(side string, place int) string {
 }
 
 // size picks the largest size that leaves at least one digit before the point.
+// Zero, with exponent 0, gets the unit itself.
 func (s spec) size(d decimal) step {
-	if d.digits == "" {
-		return step{text: string(s.unit)}
-	}
 	best := s.steps[0]
 	for _, st := range s.steps {
 		if st.power <= d.exponent {
@@ -130,7 +128,7 @@ func (s Scale) Number(v float64, digits int) string {
 	case v == 0:
 		return "0"
 	}
-	decimals := min(digits, maxDigits) - 1 - s.leading
+	decimals := digits - 1 - s.leading
 	return fixed(v, s.power, max(0, min(decimals, -lowestShown)))
 }
 

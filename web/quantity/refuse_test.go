@@ -98,12 +98,16 @@ var rejected = []refused{
 	{"5 mkΩ", "Ω", "two prefixes", nil},
 	{"5kk", "Ω", "two prefixes", nil},
 	{"5µ", "m²", "needs its unit", nil},
+	{"5K", "V/K", "is in K", nil},
+	{"4e3k", "", "A plain number takes no prefix", nil},
+	{"5 MCM", "m", "can't be read", nil},
 	{"0.5m", "m", "can be read as 0.5 m or 0.5 mm", []string{"0.5 m", "0.5 mm"}},
 
 	// Leftovers.
 	{"4.7 kΩ max", "Ω", "can't be read", nil},
 	{"4.7;", "Ω", "can't be read", nil},
 	{"5 7", "V", "space inside the number", nil},
+	{"1234 567", "V", "space inside the number", nil},
 	{"12 0000", "V", "space inside the number", nil},
 	{"1\t234", "V", "can't be read", nil},
 	{"1.2.3", "V", "can't be read", nil},

@@ -224,9 +224,7 @@ func (s spec) spelled(text string) bool {
 
 // prefixable says whether text names the unit in a way that takes a prefix.
 func (s spec) prefixable(text string) bool {
-	return text != "" && slices.ContainsFunc(s.spellings, func(sp spelling) bool {
-		return !sp.whole && sp.is(text)
-	})
+	return slices.ContainsFunc(s.spellings, func(sp spelling) bool { return !sp.whole && sp.is(text) })
 }
 
 // cutPrefix takes one prefix that the unit accepts off the front.
