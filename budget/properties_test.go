@@ -166,8 +166,8 @@ func TestNoAllocation(t *testing.T) {
 
 // TestModesMeet asks that the budget is continuous where conduction turns from
 // discontinuous to continuous. Recovery is left out: it begins at the boundary as the
-// root of the valley current, with an infinite slope, so that at loads of next to
-// nothing the balance can leap to where it feeds itself.
+// root of the valley current, with an infinite slope. So are loads of next to nothing,
+// whose loss feeds the current that causes it: there the balance may leap.
 func TestModesMeet(t *testing.T) {
 	met := 0
 	for seed := range uint64(150) {
@@ -188,6 +188,9 @@ func TestModesMeet(t *testing.T) {
 		var below, above Budget
 		m.At(Point{d.Input.Nominal.V, low, d.Ambient.V}, &below)
 		m.At(Point{d.Input.Nominal.V, high, d.Ambient.V}, &above)
+		if above.Efficiency < 0.3 {
+			continue
+		}
 		met++
 		if off := math.Abs(below.Loss-above.Loss) / above.Loss; off > 1e-3 {
 			t.Errorf("seed %d: %g W below and %g W above the boundary at %g A", seed, below.Loss, above.Loss, low)

@@ -208,10 +208,7 @@ func (p *problem) leftBehind(r unknowns) bool {
 // not: the domain of the balance ends here.
 func (p *problem) advance(x, r unknowns, slope matrix, pace float64) (unknowns, unknowns, float64, fault) {
 	for {
-		step, regular := slope.solve(r, pace)
-		if !regular || step.dot(r) <= 0 {
-			step = r.scaled(math.Min(pace, 1))
-		}
+		step := forward(r, slope, &pace)
 		step = step.scaled(p.limit(x, step))
 		after, wrong := p.at(x.plus(step))
 		if wrong == sound && (after.norm() <= 2*r.norm() || pace < 1e-3) {
@@ -224,6 +221,18 @@ func (p *problem) advance(x, r unknowns, slope matrix, pace float64) (unknowns, 
 			return x, r, pace, wrong
 		}
 	}
+}
+
+// forward returns the implicit step, at a pace short enough that it goes with the
+// residual: past a fold a long one would turn back to where the solution was lost.
+func forward(r unknowns, slope matrix, pace *float64) unknowns {
+	for *pace > 1e-3 {
+		if step, regular := slope.solve(r, *pace); regular && step.dot(r) > 0 {
+			return step
+		}
+		*pace /= 2
+	}
+	return r.scaled(*pace)
 }
 
 // nextPace lengthens the steps as the residual falls, and shortens them when it has
