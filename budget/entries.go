@@ -222,23 +222,17 @@ func windingDC(s *situation, it *Item) float64 {
 const windingShare = 0.01
 
 func windingAC(s *situation, it *Item) float64 {
-	var sum, ripple, beyond float64
-	t := s.temperature[inductorHeat]
-	known := s.m.winding.Known()
-	for n, square := range s.harmonics {
-		factor := 1.0
-		switch {
-		case s.m.winding.ByCurve():
-			factor = s.m.factors[n]
-		case known && square > 0:
-			factor, _ = s.m.winding.Factor(float64(n+1)*s.m.frequency, t)
-		}
-		part := square * factor
-		sum += part
+	sum, beyond := s.m.spectrum.Weigh(&s.harmonics, s.temperature[inductorHeat])
+	if it != nil {
+		windingTerms(s, it, sum, beyond)
+	}
+	return sum * s.rdcr
+}
+
+func windingTerms(s *situation, it *Item, sum, beyond float64) {
+	ripple := 0.0
+	for _, square := range s.harmonics {
 		ripple += square
-		if s.m.beyond[n] {
-			beyond += part
-		}
 	}
 	it.note("I_ac", math.Sqrt(ripple), "A")
 	it.note("R_dc", s.rdcr, "Ω")
@@ -246,7 +240,6 @@ func windingAC(s *situation, it *Item) float64 {
 		it.note("F", sum/ripple, "")
 	}
 	it.outside(beyond > windingShare*sum || s.m.linkage.Outside(max(math.Abs(s.flow.Min), math.Abs(s.flow.Max))))
-	return sum * s.rdcr
 }
 
 func coreLoss(s *situation, it *Item) float64 {

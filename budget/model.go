@@ -29,13 +29,12 @@ type Model struct {
 	switchCharge    device.Charge
 	rectifierCharge device.Charge
 
-	linkage magnetic.Linkage
-	law     stage.Linkage // the same, as the balances take it
-	winding magnetic.Winding
-	core    magnetic.Core
-	dcr     float64                     // Ω at 20 °C
-	factors [magnetic.Harmonics]float64 // of a winding given by a curve
-	beyond  [magnetic.Harmonics]bool    // harmonics outside that curve
+	linkage  magnetic.Linkage
+	law      stage.Linkage // the same, as the balances take it
+	winding  magnetic.Winding
+	core     magnetic.Core
+	dcr      float64 // Ω at 20 °C
+	spectrum *magnetic.Spectrum
 
 	seriesOn, seriesOff float64 // Ω of copper and shunts in the two current paths
 	gateCharge          float64 // C of all driven gates
@@ -153,11 +152,7 @@ func (m *Model) prepareInductor(l *Inductor) {
 	m.linkage = magnetic.NewLinkage(l.Inductance.V, l.ISat.V, l.SatDrop.V, area)
 	m.law = m.linkage
 	m.winding = windingOf(l)
-	for n := range m.factors {
-		if m.winding.ByCurve() {
-			m.factors[n], m.beyond[n] = m.winding.Factor(float64(n+1)*m.frequency, 0)
-		}
-	}
+	m.spectrum = magnetic.NewSpectrum(m.winding, m.frequency)
 	if l.Core != nil {
 		m.core = coreOf(l.Core, l.Inductance.V, m.frequency)
 	}

@@ -49,10 +49,6 @@ func (w Winding) Factor(f, t float64) (factor float64, outside bool) {
 // Known reports whether anything was stated about the factor.
 func (w Winding) Known() bool { return w.curve != nil || w.height > 0 }
 
-// ByCurve reports whether the factor comes from a curve, and so not from the
-// temperature.
-func (w Winding) ByCurve() bool { return w.curve != nil }
-
 // SkinDepth returns δ = √(ρ/(π·f·µ0)) in m of copper at f (Hz, > 0) and t (°C).
 func SkinDepth(f, t float64) float64 {
 	return math.Sqrt(copperResistivity * CopperFactor(t) / (math.Pi * f * vacuumPermeability))
@@ -63,7 +59,7 @@ func SkinDepth(f, t float64) float64 {
 //
 //	F = ξ·[(sinh 2ξ + sin 2ξ)/(cosh 2ξ − cos 2ξ) + ⅔·(m² − 1)·(sinh ξ − sin ξ)/(cosh ξ + cos ξ)]
 //
-// ξ ≥ 0, m ≥ 1. Below ξ = 1e-3 its series 1 + (5m² − 1)·ξ⁴/45, above 20 its limit
+// ξ ≥ 0, m ≥ 1. Below ξ = 1e-3 its series 1 + (5m² − 1)·ξ⁴/45, above 40 its limit
 // ξ·(1 + ⅔·(m² − 1)), where the formula loses digits or overflows. Source: P. L.
 // Dowell, Effects of eddy currents in transformer windings, Proc. IEE 113 (1966).
 func Dowell(xi, m float64) float64 {
@@ -71,7 +67,7 @@ func Dowell(xi, m float64) float64 {
 	switch {
 	case xi < 1e-3:
 		return 1 + (5*m*m-1)*xi*xi*xi*xi/45
-	case xi > 20:
+	case xi > 40:
 		return xi * (1 + layers)
 	}
 	sin, cos := math.Sincos(xi)
