@@ -23,7 +23,7 @@ const (
 	tableStart = -80.0 // °C
 	pieceWidth = 16.0  // K
 	pieceCount = 30    // up to 400 °C
-	order      = 7     // coefficients of a piece
+	order      = 8     // coefficients of a piece
 )
 
 // piece holds, for each harmonic, a polynomial of s = −1…1 across the piece.
@@ -72,7 +72,7 @@ func (s *Spectrum) weighLayers(square *[Harmonics]float64, t float64) (sum float
 	x := 2*(at-float64(i)) - 1
 	for n, w := range square {
 		c := &p[n]
-		sum += w * (c[0] + x*(c[1]+x*(c[2]+x*(c[3]+x*(c[4]+x*(c[5]+x*c[6]))))))
+		sum += w * (c[0] + x*(c[1]+x*(c[2]+x*(c[3]+x*(c[4]+x*(c[5]+x*(c[6]+x*c[7])))))))
 	}
 	return sum
 }
