@@ -1,0 +1,191 @@
+package assets
+
+import (
+	"encoding/json"
+	"fmt"
+	"html/template"
+	"math"
+	"os"
+	"path/filepath"
+	"testing"
+
+	"github.com/chromedp/chromedp"
+)
+
+type cell struct{ Class, Text string }
+
+type row struct {
+	Part, Name string
+	Head       bool
+	Cells      []cell
+}
+
+type galleryData struct {
+	HTMXConfig        string
+	Efficiency, Stack template.HTMLAttr
+	Loads             []int
+	Rows              []row
+}
+
+var loads = []int{5, 10, 20, 25, 30, 50, 75, 100}
+
+// gallery returns awkward data for the gallery page: lines that nearly meet, a
+// gap, a part of the curve outside its range, a load without figures.
+func gallery() galleryData {
+	return galleryData{
+		HTMXConfig: HTMXConfig, Efficiency: dataAttribute(efficiencyData()), Stack: dataAttribute(stackData("0.23")),
+		Loads: loads, Rows: galleryRows(),
+	}
+}
+
+// dataAttribute returns a chart's data as a whole attribute, because the template
+// package takes an attribute called data for an address.
+func dataAttribute(data any) template.HTMLAttr {
+	text, err := json.Marshal(data)
+	if err != nil {
+		panic(err) // the data above is plain numbers and words
+	}
+	return template.HTMLAttr(`data="` + template.HTMLEscapeString(string(text)) + `"`)
+}
+
+func efficiencyData() map[string]any {
+	line := func(name string, dash int, drop float64) map[string]any {
+		var points [][]any
+		for load := 5.0; load <= 100; load += 2.5 {
+			y := any(96 - 14/load*4 - drop*load/100)
+			if dash == 1 && load > 40 && load < 50 {
+				y = nil
+			}
+			point := []any{load, y}
+			if dash == 2 && load > 80 {
+				point = append(point, 1)
+			}
+			points = append(points, point)
+		}
+		return map[string]any{"name": name, "dash": dash, "points": points}
+	}
+	return map[string]any{
+		"title":  "Efficiency against load",
+		"x":      map[string]string{"label": "load, % of 2 A", "unit": "%"},
+		"y":      map[string]string{"label": "efficiency, %", "unit": "%"},
+		"series": []any{line("12 V", 0, 0.5), line("14.4 V", 1, 0.45), line("10.5 V", 2, 0.55)},
+	}
+}
+
+func stackData(firstTotal string) map[string]any {
+	parts := []any{}
+	for i, name := range []string{"Switch", "Rectifier", "Inductor", "Capacitors", "Drive and controller", "Copper and shunts"} {
+		cls := []string{"p-switch", "p-rectifier", "p-inductor", "p-capacitors", "p-drive", "p-layout"}[i]
+		parts = append(parts, map[string]string{"name": name, "cls": cls})
+	}
+	columns := []any{}
+	for _, load := range loads[:7] {
+		f := float64(load) / 100
+		values := []float64{0.04 + 0.36*f*f, 0.78 * f, 0.06 + 0.6*f*f, 0.003, 0.081, 0.3 * f * f}
+		sum := 0.0
+		for _, v := range values {
+			sum += v
+		}
+		total := fmt.Sprintf("%.2f", sum)
+		if load == 5 {
+			total = firstTotal
+		}
+		columns = append(columns, map[string]any{"x": fmt.Sprint(load), "values": values, "total": total, "outside": load == 75})
+	}
+	columns = append(columns, map[string]any{"x": "100", "reason": "out of reach"})
+	return map[string]any{
+		"title": "Loss against load, by part", "parts": parts, "columns": columns,
+		"x": map[string]string{"label": "load, % of 2 A", "unit": "%"},
+		"y": map[string]string{"label": "loss, W", "unit": "W"},
+	}
+}
+
+func galleryRows() []row {
+	rows := []row{}
+	for i, part := range []string{"p-switch", "p-rectifier", "p-inductor", "p-capacitors", "p-drive", "p-layout"} {
+		rows = append(rows, row{Part: part, Name: part[2:], Head: true, Cells: cells(i, true)})
+		for j := range 3 {
+			rows = append(rows, row{Part: part, Name: fmt.Sprintf("item %d", j+1), Cells: cells(i*3+j, false)})
+		}
+	}
+	return rows
+}
+
+func cells(seed int, head bool) []cell {
+	out := make([]cell, 7)
+	for i := range out {
+		class := fmt.Sprintf("s%d", (seed+i)%11)
+		if head {
+			class = ""
+		}
+		if seed == 4 && i > 4 {
+			class += " mark"
+		}
+		out[i] = cell{Class: class, Text: fmt.Sprint(math.Round(10 * math.Exp(float64(i+seed%3)/1.5)))}
+	}
+	return out
+}
+
+func TestGalleryIsAccessible(t *testing.T) {
+	axe, err := os.ReadFile("../testdata/vendor/axe.min.js")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, scheme := range []string{"light", "dark"} {
+		t.Run(scheme, func(t *testing.T) {
+			ctx := openGallery(t, 1440, scheme)
+			do(t, ctx, chromedp.Evaluate[chromedp.Void](string(axe)))
+			result := eval[struct {
+				Passes     int
+				Violations []string
+			}](t, ctx, `axe.run().then(r => ({passes: r.passes.length, violations: r.violations.flatMap(v =>
+				v.nodes.map(n => v.id + ': ' + n.html.slice(0, 160) + ' ' + n.failureSummary))}))`)
+			if result.Passes < 20 {
+				t.Errorf("axe passed only %d rules: did it see the page?", result.Passes)
+			}
+			for _, violation := range result.Violations {
+				t.Error(violation)
+			}
+		})
+	}
+}
+
+func TestGalleryFitsNarrowScreens(t *testing.T) {
+	for _, width := range []int64{320, 640, 900, 1440} {
+		ctx := openGallery(t, width, "light")
+		want(t, ctx, `document.documentElement.scrollWidth`, int(width))
+	}
+}
+
+func TestFontsLoad(t *testing.T) {
+	ctx := openGallery(t, 1440, "light")
+	for _, face := range []string{"400 16px 'Source Sans 3'", "600 16px 'Source Sans 3'", "400 16px 'Source Serif 4'", "italic 400 16px 'Source Serif 4'", "600 16px 'Source Serif 4'"} {
+		want(t, ctx, fmt.Sprintf(`document.fonts.load(%q, 'AΩθ').then(f => f.length)`, face), 2)
+	}
+	// Figures of one width, so that columns of numbers line up.
+	want(t, ctx, `(() => { const c = document.querySelector('.head strong'), w = (t) => { c.textContent = t; const r = document.createRange(); r.selectNodeContents(c); return r.getBoundingClientRect().width };
+		return Math.abs(w('1111111') - w('0808080')) < 0.01 })()`, true)
+}
+
+// TestPictures writes pictures of the gallery when asked to, for eyes to judge.
+func TestPictures(t *testing.T) {
+	if *shots == "" {
+		t.Skip("pictures are only taken with -shots DIR")
+	}
+	for _, width := range []int64{320, 900, 1440} {
+		for _, scheme := range []string{"light", "dark"} {
+			ctx := openGallery(t, width, scheme)
+			eval[bool](t, ctx, `document.fonts.ready.then(() => true)`)
+			for name, take := range map[string]chromedp.Action[[]byte]{"": chromedp.CaptureScreenshot(), "-whole": chromedp.FullScreenshot(100)} {
+				picture, err := chromedp.Run(ctx, take)
+				if err != nil {
+					t.Fatal(err)
+				}
+				file := filepath.Join(*shots, fmt.Sprintf("%d-%s%s.png", width, scheme, name))
+				if err := os.WriteFile(file, picture, 0o644); err != nil {
+					t.Fatal(err)
+				}
+			}
+		}
+	}
+}
