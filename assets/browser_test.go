@@ -109,6 +109,13 @@ func openGallery(t *testing.T, width int64, scheme string) context.Context {
 	return ctx
 }
 
+// resize gives the window another width and waits until the charts follow.
+func resize(t *testing.T, ctx context.Context, width int64) {
+	t.Helper()
+	do(t, ctx, chromedp.EmulateViewport(width, 900))
+	wait(t, ctx, `[...document.querySelectorAll('loss-chart')].every(c => Math.abs(c.querySelector('svg').getAttribute('width') - c.clientWidth) < 1)`)
+}
+
 // listen gathers the console until the context ends; the func it returns waits
 // for that and gives what was said.
 func listen(ctx context.Context) func() []string {

@@ -32,10 +32,10 @@
   'use strict';
 
   const dashes = [null, '7 3', '2 3', '9 3 2 3', '14 4'];
-  const lineHeight = 15;
+  const lineHeight = 16; // px between names, a little over the height of their letters
   const narrow = 430; // px; below it the parts' names go under the stack, not beside it
   const number = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'negative'});
-  const hint = 'Arrow keys or pointer: read the values.';
+  const hint = 'Arrow keys or pointer read the values.';
 
   const quantity = (value, unit) => `${number.format(value)}${unit ? '\u00a0' + unit : ''}`;
   const widest = (names) => 7 * Math.max(0, ...names.map((name) => name.length));
@@ -68,13 +68,15 @@
   }
 
   const frame = (width, names) => ({
-    width, height: 246, marginTop: 26, marginBottom: 42, marginLeft: 42, marginRight: names ? names + 22 : 12,
+    width, height: 226, marginTop: 26, marginBottom: 42, marginLeft: 42, marginRight: names ? names + 22 : 12,
   });
 
-  const axisTitles = (data) => [
-    Plot.gridY({stroke: 'var(--rule)', strokeOpacity: 1}),
-    Plot.axisY({label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0}),
-    Plot.axisX({label: data.x.label, labelAnchor: 'center', labelArrow: 'none', labelOffset: 36, tickSize: 4}),
+  // The axes are drawn by hand: ticks and formats given to a scale don't reach them.
+  const axes = (data, x, y) => [
+    Plot.gridY(y.ticks, {stroke: 'var(--rule)', strokeOpacity: 1}),
+    Plot.axisY(y.ticks, {label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0, text: number.format}),
+    Plot.axisX(x.ticks ?? x.domain, {label: data.x.label, labelAnchor: 'center', labelArrow: 'none', labelOffset: 36, tickSize: 4,
+      text: (t) => x.ticks ? number.format(t) : t}),
   ];
 
   // 1, 2 and 5 of each decade, and the domain's own ends where they have room.
@@ -89,16 +91,16 @@
   function xScale(points, scale) {
     const [low, high] = d3.extent(points, (p) => p[0]);
     if (scale === 'lin' || !(low > 0) || low === high) {
-      return {type: 'linear', domain: [0, high], ticks: d3.ticks(0, high, 6), tickFormat: number.format};
+      return {type: 'linear', domain: [0, high], ticks: d3.ticks(0, high, 6)};
     }
-    return {type: 'log', domain: [low, high], ticks: logTicks([low, high]), tickFormat: number.format};
+    return {type: 'log', domain: [low, high], ticks: logTicks([low, high])};
   }
 
   function yScale(points) {
     const [low, high] = d3.extent(points.filter((p) => p[1] !== null), (p) => p[1]);
     const spread = high > low ? [low, high] : [low - 1, high + 1];
     const domain = d3.nice(...spread, 5);
-    return {domain, ticks: d3.ticks(...domain, 5), tickFormat: number.format};
+    return {domain, ticks: d3.ticks(...domain, 5)};
   }
 
   // A point between two gaps has no line; it is drawn as a dot.
@@ -138,13 +140,13 @@
   function drawEfficiency(data, width, scale) {
     const points = data.series.flatMap((s) => s.points);
     if (!points.some((p) => p[1] !== null)) return {empty: 'No load here has a figure.'};
+    const x = xScale(points, scale), y = yScale(points);
     const svg = Plot.plot({
       ...frame(width, widest(data.series.map((s) => s.name))),
-      x: xScale(points, scale),
-      y: yScale(points),
-      marks: [...axisTitles(data), ...data.series.flatMap(seriesMarks), seriesNames(data.series)],
+      x, y,
+      marks: [...axes(data, x, y), ...data.series.flatMap(seriesMarks), seriesNames(data.series)],
     });
-    const note = points.some((p) => p[2]) ? '† underlaid: a curve was held flat outside its range.' : '';
+    const note = points.some((p) => p[2]) ? '† underlaid: a curve held flat outside its range.' : '';
     return {svg, note, stops: seriesStops(data, svg)};
   }
 
@@ -179,20 +181,22 @@
     const beside = width >= narrow && settled.length > 0;
     const highest = Math.max(...segments.map((s) => s.at(-1)?.high ?? 0), 0) || 1;
     const total = (c) => c.total + (c.outside ? '†' : '');
+    const x = {type: 'band', domain: data.columns.map((c) => c.x), padding: 0.22};
+    const y = {domain: [0, highest], ticks: d3.ticks(0, highest, 4)};
+    const reason = {x: 'x', y: 0, text: 'reason', rotate: -90, textAnchor: 'start', dy: -6, fill: 'var(--ink)', stroke: 'var(--bg)', strokeWidth: 5};
     const svg = Plot.plot({
       ...frame(width, beside ? widest(data.parts.map((p) => p.name)) : 0),
-      x: {type: 'band', domain: data.columns.map((c) => c.x), padding: 0.22},
-      y: {domain: [0, highest], ticks: d3.ticks(0, highest, 4), tickFormat: number.format},
+      x, y,
       color: {type: 'identity'},
       marks: [
-        ...axisTitles(data),
+        ...axes(data, x, y),
         Plot.barY(segments.flat(), {x: 'x', y1: 'low', y2: 'high', fill: 'fill', stroke: 'var(--bg)', strokeWidth: 1}),
         Plot.text(settled, {x: 'x', y: (c) => d3.sum(c.values), text: total, dy: -8}),
-        Plot.text(data.columns.filter((c) => c.reason), {x: 'x', y: 0, text: 'reason', rotate: -90, textAnchor: 'start', dx: 0, dy: -6}),
         beside ? partNames(segments.at(-1)) : null,
+        Plot.text(data.columns.filter((c) => c.reason), reason),
       ],
     });
-    const note = settled.some((c) => c.outside) ? '† a curve was held flat outside its range.' : '';
+    const note = settled.some((c) => c.outside) ? '† a curve held flat outside its range.' : '';
     return {svg, note, stops: stackStops(data, svg), key: beside ? [] : data.parts};
   }
 
