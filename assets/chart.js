@@ -4,10 +4,9 @@
      <loss-chart kind="efficiency" scale="log" data="{…}" hx-morph-skip-children></loss-chart>
      <loss-chart kind="stack" data="{…}" hx-morph-skip-children></loss-chart>
 
-   It draws into itself and redraws whenever an attribute or its width changes;
-   the page owns all three attributes. Colours are variables of the stylesheet, so
-   light and dark need no redraw. The element is to hold no children of the page's
-   own; the chart's table stands beside it in the page.
+   It draws into itself, again whenever an attribute or its width changes; the page
+   owns the attributes, and the chart's table beside it. Colours are variables of
+   the stylesheet, so light and dark need no redraw.
 
    data, kind "efficiency" (also fits any figure against load, a line per series):
      {"title":  "Efficiency against load",        read aloud, not drawn
@@ -37,7 +36,7 @@
   const number = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'negative'});
   const hint = 'Arrow keys or pointer read the values.';
 
-  const quantity = (value, unit) => `${number.format(value)}${unit ? '\u00a0' + unit : ''}`;
+  const quantity = (value, unit) => number.format(value) + (unit ? '\u00a0' + unit : '');
   const widest = (names) => 7 * Math.max(0, ...names.map((name) => name.length));
   const partFill = (cls) => /^p-[a-z]+$/.test(cls) ? `var(--${cls})` : 'var(--ink)';
 
@@ -90,10 +89,9 @@
 
   function xScale(points, scale) {
     const [low, high] = d3.extent(points, (p) => p[0]);
-    if (scale === 'lin' || !(low > 0) || low === high) {
-      return {type: 'linear', domain: [0, high], ticks: d3.ticks(0, high, 6)};
-    }
-    return {type: 'log', domain: [low, high], ticks: logTicks([low, high])};
+    return scale === 'lin' || !(low > 0) || low === high
+      ? {type: 'linear', domain: [0, high], ticks: d3.ticks(0, high, 6)}
+      : {type: 'log', domain: [low, high], ticks: logTicks([low, high])};
   }
 
   function yScale(points) {
@@ -124,14 +122,15 @@
     }), dimensions);
   }
 
+  const figure = (p, unit) => p[1] === null ? 'no figure' : quantity(p[1], unit) + (p[2] ? '†' : '');
+
   // What the cursor stops at: one entry per load, its place and what it reads.
   function seriesStops(data, svg) {
     const x = svg.scale('x'), y = svg.scale('y');
     const loads = d3.union(...data.series.map((s) => s.points.map((p) => p[0])));
     return Array.from(loads).sort(d3.ascending).map((load) => {
       const hits = data.series.map((s) => [s.name, s.points.find((p) => p[0] === load) ?? [load, null]]);
-      const text = hits.map(([name, p]) =>
-        `${name}: ${p[1] === null ? 'no figure' : quantity(p[1], data.y.unit) + (p[2] ? '†' : '')}`);
+      const text = hits.map(([name, p]) => `${name}: ${figure(p, data.y.unit)}`);
       const dots = hits.filter(([, p]) => p[1] !== null).map(([, p]) => y.apply(p[1]));
       return {x: x.apply(load), dots, text: `at ${quantity(load, data.x.unit)} — ${text.join(', ')}`};
     });
@@ -141,11 +140,8 @@
     const points = data.series.flatMap((s) => s.points);
     if (!points.some((p) => p[1] !== null)) return {empty: 'No load here has a figure.'};
     const x = xScale(points, scale), y = yScale(points);
-    const svg = Plot.plot({
-      ...frame(width, widest(data.series.map((s) => s.name))),
-      x, y,
-      marks: [...axes(data, x, y), ...data.series.flatMap(seriesMarks), seriesNames(data.series)],
-    });
+    const marks = [...axes(data, x, y), ...data.series.flatMap(seriesMarks), seriesNames(data.series)];
+    const svg = Plot.plot({...frame(width, widest(data.series.map((s) => s.name))), x, y, marks});
     const note = points.some((p) => p[2]) ? '† underlaid: a curve held flat outside its range.' : '';
     return {svg, note, stops: seriesStops(data, svg)};
   }
@@ -186,8 +182,7 @@
     const reason = {x: 'x', y: 0, text: 'reason', rotate: -90, textAnchor: 'start', dy: -6, fill: 'var(--ink)', stroke: 'var(--bg)', strokeWidth: 5};
     const svg = Plot.plot({
       ...frame(width, beside ? widest(data.parts.map((p) => p.name)) : 0),
-      x, y,
-      color: {type: 'identity'},
+      x, y, color: {type: 'identity'},
       marks: [
         ...axes(data, x, y),
         Plot.barY(segments.flat(), {x: 'x', y1: 'low', y2: 'high', fill: 'fill', stroke: 'var(--bg)', strokeWidth: 1}),
@@ -217,7 +212,7 @@
     #reading = make('p', {class: 'reading', 'aria-live': 'polite'});
     #sizes = new ResizeObserver(() => { if (this.clientWidth !== this.#width) this.#schedule(); });
     #width = 0;
-    #frame = 0;
+    #frame = 0; // the animation frame a drawing is asked for in; 0: none
     #cursor = -1; // index into #stops; -1: none
     #stops = [];
     #note = '';
@@ -296,10 +291,7 @@
 
   // One name for the whole drawing instead of the library's many inner ones.
   function labelled(svg, data) {
-    for (const inner of svg.querySelectorAll('[aria-label], [aria-description]')) {
-      inner.removeAttribute('aria-label');
-      inner.removeAttribute('aria-description');
-    }
+    svg.querySelectorAll('[aria-label]').forEach((inner) => inner.removeAttribute('aria-label'));
     svg.setAttribute('role', 'img');
     svg.setAttribute('aria-label', `${data.title}: ${data.y.label} over ${data.x.label}`);
     return svg;
