@@ -23,7 +23,7 @@ var shots = flag.String("shots", "", "a folder to write pictures of the gallery 
 
 // policy is as strict as the pages' own: nothing but this host, no inline script,
 // no inline style except the chart library's.
-const policy = "default-src 'none'; script-src 'self'; style-src 'self' " + ChartStyles +
+const policy = "default-src 'none'; script-src 'self'; style-src 'self' " + ChartStyle +
 	"; font-src 'self'; img-src 'self' data:; connect-src 'self'; form-action 'self'; base-uri 'none'; frame-ancestors 'none'"
 
 //go:embed testdata/gallery.html
