@@ -8,6 +8,8 @@
    owns the attributes, and the chart's table beside it. Colours are variables of
    the stylesheet, so light and dark need no redraw.
 
+   The types Lines and Stack of chart.go write the data.
+
    data, kind "efficiency" (also fits any figure against load, a line per series):
      {"title":  "Efficiency against load",        read aloud, not drawn
       "x":      {"label": "load, % of 2 A", "unit": "%"},

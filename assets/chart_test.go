@@ -1,6 +1,7 @@
 package assets
 
 import (
+	"encoding/json"
 	"testing"
 
 	"github.com/chromedp/cdproto/emulation"
@@ -103,4 +104,11 @@ func TestChartFollowsTheScheme(t *testing.T) {
 	}
 	want(t, ctx, colour, "rgb(217, 128, 108)")
 	want(t, ctx, `document.querySelector('#stack svg').id`, "first") // not redrawn
+}
+
+func TestPointsAsText(t *testing.T) {
+	got, err := json.Marshal([]Point{{X: 5, Y: 91.35}, {X: 10, Y: 1, None: true}, {X: 20, Y: 95, Outside: true}, {X: 30, None: true, Outside: true}})
+	if want := "[[5,91.35],[10,null],[20,95,1],[30,null]]"; err != nil || string(got) != want {
+		t.Errorf("%s, %v; want %s", got, err, want)
+	}
 }

@@ -49,37 +49,35 @@ func dataAttribute(data any) template.HTMLAttr {
 	return template.HTMLAttr(`data="` + template.HTMLEscapeString(string(text)) + `"`)
 }
 
-func efficiencyData() map[string]any {
-	line := func(name string, dash int, drop float64) map[string]any {
-		var points [][]any
+func efficiencyData() Lines {
+	line := func(name string, dash int, drop float64) Line {
+		var points []Point
 		for load := 5.0; load <= 100; load += 2.5 {
-			y := any(96 - 14/load*4 - drop*load/100)
-			if dash == 1 && load > 40 && load < 50 {
-				y = nil
-			}
-			point := []any{load, y}
-			if dash == 2 && load > 80 {
-				point = append(point, 1)
-			}
-			points = append(points, point)
+			points = append(points, Point{
+				X: load, Y: 96 - 14/load*4 - drop*load/100,
+				None: dash == 1 && load > 40 && load < 50, Outside: dash == 2 && load > 80,
+			})
 		}
-		return map[string]any{"name": name, "dash": dash, "points": points}
+		return Line{Name: name, Dash: dash, Points: points}
 	}
-	return map[string]any{
-		"title":  "Efficiency against load",
-		"x":      map[string]string{"label": "load, % of 2 A", "unit": "%"},
-		"y":      map[string]string{"label": "efficiency, %", "unit": "%"},
-		"series": []any{line("12 V", 0, 1.5), line("14.4 V", 1, 0.8), line("10.5 V", 2, 1.7)},
+	return Lines{
+		Title:  "Efficiency against load",
+		X:      Axis{Label: "load, % of 2 A", Unit: "%"},
+		Y:      Axis{Label: "efficiency, %", Unit: "%"},
+		Series: []Line{line("12 V", 0, 1.5), line("14.4 V", 1, 0.8), line("10.5 V", 2, 1.7)},
 	}
 }
 
-func stackData(firstTotal string) map[string]any {
-	parts := []any{}
-	for i, name := range []string{"Switch", "Rectifier", "Inductor", "Capacitors", "Drive and controller", "Copper and shunts"} {
-		cls := []string{"p-switch", "p-rectifier", "p-inductor", "p-capacitors", "p-drive", "p-layout"}[i]
-		parts = append(parts, map[string]string{"name": name, "cls": cls})
+func stackData(firstTotal string) Stack {
+	stack := Stack{
+		Title: "Loss against load, by part",
+		X:     Axis{Label: "load, % of 2 A", Unit: "%"},
+		Y:     Axis{Label: "loss, W", Unit: "W"},
+		Parts: []Part{
+			{"Switch", "p-switch"}, {"Rectifier", "p-rectifier"}, {"Inductor", "p-inductor"},
+			{"Capacitors", "p-capacitors"}, {"Drive and controller", "p-drive"}, {"Copper and shunts", "p-layout"},
+		},
 	}
-	columns := []any{}
 	for _, load := range loads[:7] {
 		f := float64(load) / 100
 		values := []float64{0.04 + 0.36*f*f, 0.78 * f, 0.06 + 0.6*f*f, 0.003, 0.081, 0.3 * f * f}
@@ -87,18 +85,11 @@ func stackData(firstTotal string) map[string]any {
 		for _, v := range values {
 			sum += v
 		}
-		total := fmt.Sprintf("%.2f", sum)
-		if load == 5 {
-			total = firstTotal
-		}
-		columns = append(columns, map[string]any{"x": fmt.Sprint(load), "values": values, "total": total, "outside": load == 75})
+		stack.Columns = append(stack.Columns, Column{X: fmt.Sprint(load), Values: values, Total: fmt.Sprintf("%.2f", sum), Outside: load == 75})
 	}
-	columns = append(columns, map[string]any{"x": "100", "reason": "out of reach"})
-	return map[string]any{
-		"title": "Loss against load, by part", "parts": parts, "columns": columns,
-		"x": map[string]string{"label": "load, % of 2 A", "unit": "%"},
-		"y": map[string]string{"label": "loss, W", "unit": "W"},
-	}
+	stack.Columns[0].Total = firstTotal
+	stack.Columns = append(stack.Columns, Column{X: "100", Reason: "out of reach"})
+	return stack
 }
 
 func galleryRows() []row {
