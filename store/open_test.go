@@ -1,0 +1,359 @@
+package store
+
+import (
+	"crypto/sha256"
+	"errors"
+	"fmt"
+	"io/fs"
+	"os"
+	"os/exec"
+	"path/filepath"
+	"slices"
+	"strings"
+	"syscall"
+	"testing"
+
+	"github.com/google/go-cmp/cmp"
+)
+
+// filesBelow lists all files in dir, by their relative paths.
+func filesBelow(t testing.TB, dir string) []string {
+	t.Helper()
+	var list []string
+	err := filepath.WalkDir(dir, func(path string, e fs.DirEntry, err error) error {
+		if err == nil && !e.IsDir() {
+			rel, _ := filepath.Rel(dir, path)
+			list = append(list, rel)
+		}
+		return err
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return list
+}
+
+// stateOf gives the names and hashes of all files in dir.
+func stateOf(t testing.TB, dir string) []string {
+	t.Helper()
+	list := filesBelow(t, dir)
+	for i, name := range list {
+		b, err := os.ReadFile(filepath.Join(dir, name))
+		if err != nil {
+			t.Fatal(err)
+		}
+		list[i] = fmt.Sprintf("%s %x", name, sha256.Sum256(b))
+	}
+	return list
+}
+
+// soundFile makes a data file with something in it.
+func soundFile(t testing.TB, path string) {
+	t.Helper()
+	s := openAt(t, path)
+	d := create1(t, s, "d")
+	for range 40 {
+		save1(t, s, d, strings.Repeat("note ", 500))
+	}
+	closeNow(t, s)
+}
+
+// leaveLog leaves a data file as a crash does: with work in the log beside it.
+func leaveLog(t testing.TB, path string, work ...string) {
+	t.Helper()
+	s := openAt(t, path)
+	create1(t, s, "in the log")
+	for _, w := range work {
+		mustRaw(t, s, w)
+	}
+	copies := map[string][]byte{}
+	for _, suffix := range []string{"", "-wal"} {
+		b, err := os.ReadFile(path + suffix)
+		if err != nil || len(b) == 0 {
+			t.Fatalf("%s%s: %d bytes, %v", path, suffix, len(b), err)
+		}
+		copies[suffix] = b
+	}
+	closeNow(t, s)
+	for suffix, b := range copies {
+		write(t, path+suffix, b)
+	}
+}
+
+func write(t testing.TB, path string, b []byte) {
+	t.Helper()
+	if err := os.WriteFile(path, b, 0o600); err != nil {
+		t.Fatal(err)
+	}
+}
+
+func edit(t testing.TB, path string, change func([]byte) []byte) {
+	t.Helper()
+	b, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	write(t, path, change(b))
+}
+
+func inDatabase(statements ...string) func(*testing.T, string) {
+	return func(t *testing.T, path string) {
+		soundFile(t, path)
+		db := loose(t, path)
+		for _, s := range statements {
+			mustExec(t, db, s)
+		}
+		if err := db.Close(); err != nil {
+			t.Fatal(err)
+		}
+	}
+}
+
+func onBytes(change func([]byte) []byte) func(*testing.T, string) {
+	return func(t *testing.T, path string) {
+		soundFile(t, path)
+		edit(t, path, change)
+	}
+}
+
+var refused = []struct {
+	what  string
+	make  func(t *testing.T, path string)
+	kind  error
+	words string
+}{
+	{"text", func(t *testing.T, p string) { write(t, p, []byte("vin,iout\n12,3\n")) }, ErrForeign, "not a Lossbook data file"},
+	{"one byte", func(t *testing.T, p string) { write(t, p, []byte("x")) }, ErrForeign, "not a Lossbook data file"},
+	{"garbage", func(t *testing.T, p string) { write(t, p, []byte(strings.Repeat("\xff\x00\x17", 9999))) }, ErrForeign, "not a Lossbook data file"},
+	{"empty", func(t *testing.T, p string) { write(t, p, nil) }, ErrBroken, "is empty"},
+	{"another database", func(t *testing.T, p string) {
+		db := loose(t, p)
+		mustExec(t, db, `CREATE TABLE designs (id INTEGER); PRAGMA application_id = 7`)
+		db.Close()
+	}, ErrForeign, "another program"},
+	{"another database with a log", func(t *testing.T, p string) {
+		db := loose(t, p)
+		mustExec(t, db, `PRAGMA journal_mode = WAL; CREATE TABLE a (b); PRAGMA wal_checkpoint; INSERT INTO a VALUES (1)`)
+		main, _ := os.ReadFile(p)
+		log, _ := os.ReadFile(p + "-wal")
+		db.Close()
+		write(t, p, main)
+		write(t, p+"-wal", log)
+	}, ErrForeign, "another program"},
+	{"our mark without our tables", func(t *testing.T, p string) {
+		db := loose(t, p)
+		mustExec(t, db, fmt.Sprintf(`CREATE TABLE a (b); PRAGMA application_id = %d`, applicationID))
+		db.Close()
+	}, ErrBroken, "tables are missing"},
+	{"cut in the header", onBytes(func(b []byte) []byte { return b[:60] }), ErrBroken, "ends within its header"},
+	{"cut after the header", onBytes(func(b []byte) []byte { return b[:100] }), ErrBroken, "damaged"},
+	{"cut to half", onBytes(func(b []byte) []byte { return b[:len(b)/2] }), ErrBroken, "damaged"},
+	{"cut by a page", onBytes(func(b []byte) []byte { return b[:len(b)-4096] }), ErrBroken, "damaged"},
+	{"cut by a byte", onBytes(func(b []byte) []byte { return b[:len(b)-1] }), ErrBroken, "damaged"},
+	{"a page overwritten", onBytes(func(b []byte) []byte {
+		copy(b[5*4096:6*4096], strings.Repeat("\xa5", 4096))
+		return b
+	}), ErrBroken, "damaged"},
+	{"first page overwritten behind the header", onBytes(func(b []byte) []byte {
+		copy(b[100:4096], strings.Repeat("\xa5", 4096))
+		return b
+	}), ErrBroken, "damaged"},
+	{"orphans", inDatabase(`PRAGMA foreign_keys = 0`, `DELETE FROM designs`), ErrBroken, "refer to others"},
+	{"newer", inDatabase(`UPDATE schema_migrations SET version = 99`), ErrNewer, "newer Lossbook (layout 99"},
+	{"newer in the log", func(t *testing.T, p string) {
+		leaveLog(t, p, `UPDATE schema_migrations SET version = 99`)
+	}, ErrNewer, "newer Lossbook"},
+	{"half migrated", inDatabase(`UPDATE schema_migrations SET dirty = 1`), ErrBroken, "cut short"},
+	{"no version", inDatabase(`DELETE FROM schema_migrations`), ErrBroken, "tables are missing"},
+	{"log without its file", func(t *testing.T, p string) {
+		leaveLog(t, p)
+		os.Remove(p)
+	}, ErrBroken, "is missing, but its log"},
+	{"folder", func(t *testing.T, p string) { os.Mkdir(p, 0o700) }, ErrUnreadable, "is a folder"},
+	{"pipe", func(t *testing.T, p string) { syscall.Mkfifo(p, 0o600) }, ErrUnreadable, "not a regular file"},
+	{"dangling link", func(t *testing.T, p string) { os.Symlink(p+".gone", p) }, ErrUnreadable, "link to a file that isn't there"},
+}
+
+func TestRefusedFilesStayUntouched(t *testing.T) {
+	for _, c := range refused {
+		t.Run(c.what, func(t *testing.T) {
+			dir := t.TempDir()
+			path := filepath.Join(dir, "lossbook.db")
+			c.make(t, path)
+			checkRefused(t, dir, path, c.kind, c.words)
+		})
+	}
+}
+
+func checkRefused(t *testing.T, dir, path string, kind error, words string) {
+	t.Helper()
+	readable := !strings.Contains(t.Name(), "pipe") && !strings.Contains(t.Name(), "link")
+	list := func() []string {
+		if readable {
+			return stateOf(t, dir)
+		}
+		return filesBelow(t, dir)
+	}
+	before := list()
+	s, err := Open(t.Context(), path)
+	if err == nil {
+		s.Close()
+		t.Fatal("was opened")
+	}
+	t.Log(err)
+	if !errors.Is(err, kind) || !strings.Contains(err.Error(), words) || strings.Contains(err.Error(), "\n") {
+		t.Errorf("refused with %q, want one line of kind %q with %q", err, kind, words)
+	}
+	if diff := cmp.Diff(before, list()); diff != "" {
+		t.Errorf("files changed:\n%s", diff)
+	}
+}
+
+func TestFileBelowAFileIsRefused(t *testing.T) {
+	dir := t.TempDir()
+	write(t, filepath.Join(dir, "file"), []byte("x"))
+	checkRefused(t, dir, filepath.Join(dir, "file", "lossbook.db"), ErrUnreadable, "not a directory")
+}
+
+// The modes of files don't hold root back: there the test runs as nobody.
+func TestNoPermission(t *testing.T) {
+	dir := sharedDir(t)
+	path := filepath.Join(dir, "lossbook.db")
+	soundFile(t, path)
+	for _, c := range []struct {
+		what       string
+		file, fold fs.FileMode
+	}{
+		{"file not readable", 0, 0o777},
+		{"file not writable", 0o444, 0o777},
+		{"folder not writable", 0o666, 0o555},
+		{"folder closed", 0o666, 0},
+	} {
+		before := stateOf(t, dir)
+		chmod(t, path, c.file)
+		chmod(t, dir, c.fold)
+		out, err := openAsNobody(t, path)
+		chmod(t, dir, 0o777)
+		if err == nil || !strings.Contains(out, "permission denied") || strings.Count(out, "\n") != 1 {
+			t.Errorf("%s: %v, %q", c.what, err, out)
+		}
+		chmod(t, path, 0o600)
+		if diff := cmp.Diff(before, stateOf(t, dir)); diff != "" {
+			t.Errorf("%s: files changed:\n%s", c.what, diff)
+		}
+	}
+}
+
+func chmod(t *testing.T, path string, mode fs.FileMode) {
+	t.Helper()
+	if err := os.Chmod(path, mode); err != nil {
+		t.Fatal(err)
+	}
+}
+
+// sharedDir is a folder that other users can reach.
+func sharedDir(t *testing.T) string {
+	t.Helper()
+	dir, err := os.MkdirTemp("", "lossbook-test-")
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Cleanup(func() { os.RemoveAll(dir) })
+	chmod(t, dir, 0o777)
+	return dir
+}
+
+// openAsNobody opens the file in another process, which has given up the
+// rights of root if it had them, and returns what that says.
+func openAsNobody(t *testing.T, path string) (string, error) {
+	t.Helper()
+	self, err := os.Executable()
+	if err != nil {
+		t.Fatal(err)
+	}
+	binary := filepath.Join(sharedDir(t), "store.test")
+	if err := copyFile(self, binary); err != nil {
+		t.Fatal(err)
+	}
+	chmod(t, binary, 0o755)
+	cmd := exec.Command(binary, path)
+	cmd.Dir = filepath.Dir(binary)
+	cmd.Env = []string{childEnv + "=open", "TMPDIR=" + os.TempDir()}
+	if os.Getuid() == 0 {
+		cmd.SysProcAttr = &syscall.SysProcAttr{Credential: &syscall.Credential{Uid: 65534, Gid: 65534}}
+	}
+	out, err := cmd.CombinedOutput()
+	return string(out), err
+}
+
+func TestPermissionsWhateverTheUmask(t *testing.T) {
+	for _, umask := range []int{0, 0o022, 0o777} {
+		old := syscall.Umask(umask)
+		path := filepath.Join(t.TempDir(), "a", "b", "lossbook.db")
+		os.Chmod(filepath.Dir(filepath.Dir(filepath.Dir(path))), 0o755)
+		s, err := Open(t.Context(), path)
+		if err != nil {
+			syscall.Umask(old)
+			t.Fatal(err)
+		}
+		create1(t, s, "d")
+		syscall.Umask(old)
+		want := map[string]fs.FileMode{"": 0o600, "-wal": 0o600, "-shm": 0o600, ".lock": 0o600}
+		for suffix, mode := range want {
+			wantMode(t, path+suffix, mode)
+		}
+		wantMode(t, filepath.Dir(path), 0o700)
+		wantMode(t, filepath.Dir(filepath.Dir(path)), 0o700)
+		closeNow(t, s)
+		chmod(t, path, 0o644)
+		openAt(t, path)
+		wantMode(t, path, 0o600)
+	}
+}
+
+func wantMode(t *testing.T, path string, mode fs.FileMode) {
+	t.Helper()
+	info, err := os.Stat(path)
+	if err != nil || info.Mode().Perm() != mode {
+		t.Errorf("%s: mode %v (%v), want %v", path, info.Mode(), err, mode)
+	}
+}
+
+func TestFolderThatIsThereKeepsItsMode(t *testing.T) {
+	dir := sharedDir(t)
+	openAt(t, filepath.Join(dir, "lossbook.db"))
+	wantMode(t, dir, 0o777)
+}
+
+func TestCloseLeavesOneFile(t *testing.T) {
+	path := dataFile(t)
+	s := openAt(t, path)
+	create1(t, s, "d")
+	if got := filesBelow(t, filepath.Dir(path)); !slices.Contains(got, "lossbook.db-wal") {
+		t.Errorf("no log while open: %v", got)
+	}
+	closeNow(t, s)
+	if got := filesBelow(t, filepath.Dir(path)); !slices.Equal(got, []string{"lossbook.db"}) {
+		t.Errorf("left %v", got)
+	}
+}
+
+func TestLogOfACrashIsWorkedIn(t *testing.T) {
+	path := dataFile(t)
+	leaveLog(t, path)
+	wantNames(t, openAt(t, path), "in the log")
+}
+
+// A crash while the file was first made leaves only its draft.
+func TestLeftDraftIsReplaced(t *testing.T) {
+	path := dataFile(t)
+	os.MkdirAll(filepath.Dir(path), 0o700)
+	write(t, path+".building", []byte("half"))
+	write(t, path+".building-wal", []byte("half"))
+	s := openAt(t, path)
+	create1(t, s, "d")
+	closeNow(t, s)
+	if got := filesBelow(t, filepath.Dir(path)); !slices.Equal(got, []string{"lossbook.db"}) {
+		t.Errorf("left %v", got)
+	}
+}
