@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"syscall"
 	"testing"
@@ -47,6 +48,12 @@ func serveOnFullDisk(args []string) error {
 	if err := openWhenFull(dir, path); err != nil {
 		return fmt.Errorf("at start: %w", err)
 	}
+	if err := createWithLittleRoom(dir); err != nil {
+		return fmt.Errorf("a new file: %w", err)
+	}
+	if err := upgradeWithLittleRoom(dir, path); err != nil {
+		return fmt.Errorf("a new layout: %w", err)
+	}
 	return nil
 }
 
@@ -60,7 +67,7 @@ func fillWhileServing(dir, path string) error {
 	if err != nil {
 		return err
 	}
-	if err := fill(dir); err != nil {
+	if err := fill(dir, 0); err != nil {
 		return err
 	}
 	big := NewRevision{Points: make([]byte, 300_000)}
@@ -82,24 +89,22 @@ func fillWhileServing(dir, path string) error {
 }
 
 func openWhenFull(dir, path string) error {
-	if err := fill(dir); err != nil {
+	if err := fill(dir, 0); err != nil {
 		return err
 	}
 	for _, p := range []string{path, filepath.Join(dir, "new.db"), filepath.Join(dir, "sub", "new.db")} {
 		before, _ := os.ReadFile(p)
-		s, err := Open(context.Background(), p)
-		if err == nil {
-			return fmt.Errorf("%s: was opened", p)
+		_, err := Open(context.Background(), p)
+		if after, _ := os.ReadFile(p); !errors.Is(err, ErrNoRoom) || string(after) != string(before) {
+			return fmt.Errorf("%s: %v, want ErrNoRoom and the same bytes", p, err)
 		}
 		fmt.Println(err)
-		if after, _ := os.ReadFile(p); !errors.Is(err, ErrNoRoom) || string(after) != string(before) {
-			return fmt.Errorf("%s: %w, want ErrNoRoom and the same bytes", p, err)
-		}
-		_ = s
 	}
-	left, err := filepath.Glob(filepath.Join(dir, "*"))
-	if err != nil || len(left) > 3 { // the file, the ballast, perhaps the folder
-		return fmt.Errorf("left %v, %w", left, err)
+	if err := os.Remove(filepath.Join(dir, "sub")); err != nil {
+		return err
+	}
+	if err := wantOnly(dir, ballast(dir), path); err != nil {
+		return err
 	}
 	if err := free(dir); err != nil {
 		return err
@@ -112,9 +117,89 @@ func openWhenFull(dir, path string) error {
 	return errors.Join(err, s.Close())
 }
 
+// littleRoom tries something with ever more room until it works, and tells how
+// often it didn't.
+func littleRoom(dir string, try func() error) (failed int, err error) {
+	for room := int64(0); room < 2<<20; room += 8192 {
+		if err := fill(dir, room); err != nil {
+			return failed, err
+		}
+		err := try()
+		if err := free(dir); err != nil {
+			return failed, err
+		}
+		if err == nil {
+			return failed, nil
+		}
+		if !errors.Is(err, ErrNoRoom) {
+			return failed, fmt.Errorf("with %d bytes: %w, want ErrNoRoom", room, err)
+		}
+		failed++
+	}
+	return failed, errors.New("never had room enough")
+}
+
+func createWithLittleRoom(dir string) error {
+	path := filepath.Join(dir, "new.db")
+	others, _ := filepath.Glob(filepath.Join(dir, "*"))
+	failed, err := littleRoom(dir, func() error {
+		s, err := Open(context.Background(), path)
+		if err == nil {
+			return s.Close()
+		}
+		// A file that was finished when the room ended is good, and stays.
+		if _, gone := os.Stat(path); gone == nil {
+			return err
+		}
+		return errors.Join(err, wantOnly(dir, append(others, ballast(dir))...))
+	})
+	fmt.Println("refused for want of room:", failed, "times")
+	if failed < 3 {
+		return fmt.Errorf("only %d failures: not every step met the full disk", failed)
+	}
+	return errors.Join(err, os.Remove(path))
+}
+
+func upgradeWithLittleRoom(dir, path string) error {
+	next, err := newSchema(nextLayout(addColumn))
+	if err != nil {
+		return err
+	}
+	before, err := os.ReadFile(path)
+	if err != nil {
+		return err
+	}
+	others, _ := filepath.Glob(filepath.Join(dir, "*"))
+	failed, err := littleRoom(dir, func() error {
+		err := upgrade(context.Background(), path, 1, next, fixedClock()())
+		if err == nil {
+			return nil
+		}
+		if after, _ := os.ReadFile(path); string(after) != string(before) {
+			return fmt.Errorf("the file was changed: %v", err)
+		}
+		return errors.Join(refusal(path, err), wantOnly(dir, append(others, ballast(dir))...))
+	})
+	fmt.Println("not upgraded for want of room:", failed, "times")
+	if failed < 10 {
+		return fmt.Errorf("only %d failures: not every step met the full disk", failed)
+	}
+	return err
+}
+
+func wantOnly(dir string, want ...string) error {
+	left, err := filepath.Glob(filepath.Join(dir, "*"))
+	slices.Sort(want)
+	if err == nil && !slices.Equal(left, want) {
+		err = fmt.Errorf("left %v, want %v", left, want)
+	}
+	return err
+}
+
 func ballast(dir string) string { return filepath.Join(dir, "ballast") }
 
-func fill(dir string) error {
+// fill fills the disk but for some room.
+func fill(dir string, room int64) error {
 	f, err := os.Create(ballast(dir))
 	if err != nil {
 		return err
@@ -122,11 +207,16 @@ func fill(dir string) error {
 	defer f.Close()
 	for block := make([]byte, 4096); ; {
 		if _, err := f.Write(block); errors.Is(err, syscall.ENOSPC) {
-			return nil
+			break
 		} else if err != nil {
 			return err
 		}
 	}
+	info, err := f.Stat()
+	if err != nil {
+		return err
+	}
+	return f.Truncate(max(info.Size()-room, 0))
 }
 
 func free(dir string) error { return os.Remove(ballast(dir)) }

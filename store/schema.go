@@ -9,6 +9,7 @@ import (
 	"strings"
 
 	"github.com/golang-migrate/migrate/v4"
+	"github.com/golang-migrate/migrate/v4/database"
 	"github.com/golang-migrate/migrate/v4/database/sqlite"
 	"github.com/golang-migrate/migrate/v4/source"
 	"github.com/golang-migrate/migrate/v4/source/iofs"
@@ -42,7 +43,7 @@ func newSchema(files fs.FS) (schema, error) {
 // migrate brings the file at path to the latest layout, each step in a
 // transaction. A step that fails leaves the file marked as half done, so this
 // is only ever given a file that can be thrown away.
-func (s schema) migrate(path string) (err error) {
+func (s schema) migrate(path string) error {
 	steps, err := iofs.New(s.files, ".")
 	if err != nil {
 		return err
@@ -51,12 +52,16 @@ func (s schema) migrate(path string) (err error) {
 	if err != nil {
 		return err
 	}
-	defer func() { err = errors.Join(err, closeWriter(db)) }()
-	return s.run(steps, db)
+	if err := s.run(steps, db); err != nil {
+		// The library can leave a transaction open on the only connection, and
+		// a last checkpoint would wait for it without end.
+		return errors.Join(err, db.Close())
+	}
+	return closeWriter(db)
 }
 
-// run leaves db open: the library's own Close would not report what its last
-// checkpoint met.
+// run leaves db open: the library's own Close would keep quiet about what its
+// last checkpoint met.
 func (s schema) run(steps source.Driver, db *sql.DB) error {
 	target, err := sqlite.WithInstance(db, &sqlite.Config{})
 	if err != nil {
@@ -66,7 +71,17 @@ func (s schema) run(steps source.Driver, db *sql.DB) error {
 	if err != nil {
 		return err
 	}
-	return m.Migrate(s.latest)
+	return unquoted(m.Migrate(s.latest))
+}
+
+// unquoted takes the database's own error out of the library's, which repeats
+// the whole step and hides what it wraps.
+func unquoted(err error) error {
+	var quoted *database.Error
+	if errors.As(err, &quoted) && quoted.OrigErr != nil {
+		return quoted.OrigErr
+	}
+	return err
 }
 
 // versionOf reads the number of the last step that a file has run. The
