@@ -27,9 +27,9 @@ CREATE TABLE designs (
 
 CREATE INDEX designs_by_change ON designs (updated_at DESC, id DESC);
 
--- WITHOUT ROWID, so that the key below is the only one a row can be replaced
--- by; small columns first, so a list of heads reads no more than it shows.
+-- Small columns first, so a list of heads reads no more than it shows.
 CREATE TABLE revisions (
+    id         INTEGER PRIMARY KEY CHECK (id >= 1),
     design     INTEGER NOT NULL REFERENCES designs (id) ON UPDATE RESTRICT ON DELETE RESTRICT,
     number     INTEGER NOT NULL CHECK (number >= 1),
     created_at INTEGER NOT NULL,
@@ -40,14 +40,16 @@ CREATE TABLE revisions (
     draft      BLOB    NOT NULL,             -- its entries as typed
     points     BLOB    NOT NULL,             -- the results, as they were then
     findings   BLOB    NOT NULL,
-    PRIMARY KEY (design, number)
-) STRICT, WITHOUT ROWID;
+    UNIQUE (design, number)
+) STRICT;
 
 -- Numbers run 1, 2, 3, … in a design. The check comes before SQLite settles a
--- conflict, so it also stops INSERT OR REPLACE from overwriting a revision on
--- a connection that doesn't have recursive_triggers on.
+-- conflict, so it also stops INSERT OR REPLACE from overwriting a revision, by
+-- either key, on a connection that doesn't have recursive_triggers on. NEW.id
+-- is -1 here unless the statement names one.
 CREATE TRIGGER revisions_in_order BEFORE INSERT ON revisions
 WHEN NEW.number <> (SELECT coalesce(max(number), 0) + 1 FROM revisions WHERE design = NEW.design)
+    OR EXISTS (SELECT 1 FROM revisions WHERE id = NEW.id)
 BEGIN
     SELECT RAISE(ABORT, 'a revision takes the next number and is never replaced');
 END;

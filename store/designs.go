@@ -40,8 +40,8 @@ type Change struct {
 }
 
 const selectDesigns = `SELECT id, name, sample, created_at, updated_at, deleted_at, version, draft, complete,
-	(SELECT count(*) FROM revisions WHERE design = id),
-	(SELECT coalesce(max(number), 0) FROM revisions WHERE design = id)
+	(SELECT count(*) FROM revisions WHERE design = designs.id),
+	(SELECT coalesce(max(number), 0) FROM revisions WHERE design = designs.id)
 	FROM designs `
 
 // Designs lists the designs outside the bin, the last changed one first.

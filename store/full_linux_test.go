@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"os/signal"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -12,7 +13,46 @@ import (
 	"testing"
 )
 
-func init() { children["serve on full disk"] = serveOnFullDisk }
+func init() {
+	children["serve on full disk"] = serveOnFullDisk
+	children["serve with a limit"] = serveWithLimit
+}
+
+// A limit on the size of files, like a quota, ends a write with another error
+// than a full disk does.
+func TestFileSizeLimit(t *testing.T) {
+	if out, err := child(t, "serve with a limit", dataFile(t)).Output(); err != nil {
+		t.Errorf("%v\n%s", err, out)
+	}
+}
+
+func serveWithLimit(args []string) error {
+	ctx := context.Background()
+	signal.Ignore(syscall.SIGXFSZ)
+	s, err := Open(ctx, args[0])
+	if err != nil {
+		return err
+	}
+	var old syscall.Rlimit
+	if err := syscall.Getrlimit(syscall.RLIMIT_FSIZE, &old); err != nil {
+		return err
+	}
+	small := syscall.Rlimit{Cur: 200_000, Max: old.Max}
+	if err := syscall.Setrlimit(syscall.RLIMIT_FSIZE, &small); err != nil {
+		return err
+	}
+	big := NewDesign{Draft: make([]byte, 300_000)}
+	if _, err := s.Create(ctx, big); !errors.Is(err, ErrFull) {
+		return fmt.Errorf("with the limit: %v, want ErrFull", err)
+	}
+	if err := syscall.Setrlimit(syscall.RLIMIT_FSIZE, &old); err != nil {
+		return err
+	}
+	if _, err := s.Create(ctx, big); err != nil {
+		return fmt.Errorf("the same without it: %w", err)
+	}
+	return s.Close()
+}
 
 // A real full disk: a file system of 2 MB, mounted where only the test's child
 // can see it.

@@ -4,6 +4,7 @@ import (
 	"context"
 	"database/sql"
 	"fmt"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"testing"
@@ -143,4 +144,12 @@ func openOnly(args []string) error {
 		return err
 	}
 	return s.Close()
+}
+
+func wantMode(t *testing.T, path string, mode fs.FileMode) {
+	t.Helper()
+	info, err := os.Stat(path)
+	if err != nil || info.Mode().Perm() != mode {
+		t.Errorf("%s: mode %v (%v), want %v", path, info.Mode(), err, mode)
+	}
 }

@@ -8,6 +8,7 @@ import (
 	"sync"
 	"sync/atomic"
 	"testing"
+	"time"
 )
 
 func TestSecondStartSaysWhereTheFirstIs(t *testing.T) {
@@ -68,7 +69,7 @@ func TestLockOfAKilledProcessIsTaken(t *testing.T) {
 // Owners come and go, and remove the lock's file each time: there is never
 // more than one.
 func TestOneOwnerAtATime(t *testing.T) {
-	const contenders, wins = 8, 25
+	const contenders, wins = 8, 40
 	path := filepath.Join(t.TempDir(), "x.db")
 	var owners, taken atomic.Int64
 	var all sync.WaitGroup
@@ -86,6 +87,7 @@ func TestOneOwnerAtATime(t *testing.T) {
 				if n := owners.Add(1); n != 1 {
 					t.Errorf("%d owners", n)
 				}
+				time.Sleep(100 * time.Microsecond) // for others to meet it
 				owners.Add(-1)
 				won++
 				taken.Add(1)

@@ -79,9 +79,13 @@ var attempts = []string{
 	`UPDATE OR REPLACE revisions SET number = 1 WHERE number = 2`,
 	`DELETE FROM revisions`,
 	`DELETE FROM revisions WHERE number = 2`,
-	`INSERT OR REPLACE INTO revisions SELECT design, number, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 1`,
-	`INSERT OR REPLACE INTO revisions SELECT design, number, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 2`,
-	`REPLACE INTO revisions SELECT design, 5, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 1`,
+	`INSERT OR REPLACE INTO revisions SELECT id + 10, design, number, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 1`,
+	`INSERT OR REPLACE INTO revisions SELECT id + 10, design, number, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 2`,
+	`REPLACE INTO revisions SELECT id, design, 5, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 1`,
+	`REPLACE INTO revisions SELECT id, design, 3, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 1`,
+	`REPLACE INTO revisions (_rowid_, design, number, created_at, model, hash, note, complete, draft, points, findings)
+		SELECT id, design, 3, created_at, model, hash, 'x', complete, draft, points, findings FROM revisions WHERE number = 2`,
+	`UPDATE OR REPLACE revisions SET id = 1 WHERE number = 2`,
 	`INSERT INTO revisions SELECT * FROM revisions WHERE true ON CONFLICT DO UPDATE SET note = 'x'`,
 	`DELETE FROM designs`,
 	`UPDATE designs SET id = 9`,
@@ -129,7 +133,7 @@ func TestRevisionsCanNotBeReplacedByOthers(t *testing.T) {
 
 func dump(t *testing.T, db *sql.DB) []string {
 	t.Helper()
-	rows, err := db.Query(`SELECT concat_ws('|', design, number, created_at, model, hash, note, hex(complete), hex(draft), hex(points), hex(findings)) FROM revisions`)
+	rows, err := db.Query(`SELECT concat_ws('|', id, design, number, created_at, model, hash, note, hex(complete), hex(draft), hex(points), hex(findings)) FROM revisions`)
 	if err != nil {
 		t.Fatal(err)
 	}

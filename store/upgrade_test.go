@@ -105,6 +105,30 @@ func TestFailedUpgradeLeavesTheOldFile(t *testing.T) {
 	}
 }
 
+// The migration library leaves its transaction open when it can't note that a
+// step begins: that must end in an error, and not in a wait.
+func TestUpgradeThatCanNotBeNotedEnds(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "lossbook.db")
+	inDatabase(`CREATE TRIGGER stuck BEFORE DELETE ON schema_migrations BEGIN SELECT RAISE(ABORT, 'stuck'); END`)(t, path)
+	before := stateOf(t, filepath.Dir(path))
+	ended := make(chan error, 1)
+	go func() {
+		_, err := openNext(t, path, addColumn)
+		ended <- err
+	}()
+	select {
+	case err := <-ended:
+		if err == nil || !strings.Contains(err.Error(), "stuck") {
+			t.Errorf("%v, want what the database said", err)
+		}
+	case <-time.After(20 * time.Second):
+		t.Fatal("still waiting")
+	}
+	if diff := cmp.Diff(before, stateOf(t, filepath.Dir(path))); diff != "" {
+		t.Errorf("files changed:\n%s", diff)
+	}
+}
+
 func TestUpgradeStopsWhileAnotherProgramReads(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "lossbook.db")
 	leaveLog(t, path)
