@@ -230,7 +230,12 @@ func TestCloseLeavesOneFile(t *testing.T) {
 func TestLogOfACrashIsWorkedIn(t *testing.T) {
 	path := dataFile(t)
 	leaveLog(t, path)
+	scratch := t.TempDir()
+	t.Setenv("TMPDIR", scratch)
 	wantNames(t, openAt(t, path), "in the log")
+	if left := filesBelow(t, scratch); len(left) > 0 {
+		t.Errorf("the inspection left %v", left)
+	}
 }
 
 // A crash while the file was first made leaves only its draft.
@@ -244,5 +249,12 @@ func TestLeftDraftIsReplaced(t *testing.T) {
 	closeNow(t, s)
 	if got := filesBelow(t, filepath.Dir(path)); !slices.Equal(got, []string{"lossbook.db"}) {
 		t.Errorf("left %v", got)
+	}
+}
+
+func TestRefusalIsOneLine(t *testing.T) {
+	err := refusal("x.db", errors.Join(errors.New("this"), errors.New("that")))
+	if want := "data file x.db can't be opened: this; that; mend that, or name another file"; err.Error() != want {
+		t.Errorf("%q, want %q", err, want)
 	}
 }
