@@ -17,6 +17,7 @@ import (
 
 func apiRoutes(r chi.Router, s *Server) {
 	r.Route("/api/v1", func(r chi.Router) {
+		r.Get("/openapi.json", s.handle(getOpenAPI))
 		r.Post("/budget", s.handle(postBudget))
 		r.Get("/designs", s.handle(s.listDesigns))
 		r.Post("/designs", s.handle(s.postDesign))
