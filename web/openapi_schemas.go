@@ -28,6 +28,8 @@ func schemas() object {
 	revision["design"] = ref("Design")
 	revision["points"] = object{"type": "array", "items": ref("Point")}
 	revision["findings"] = object{"type": "array", "items": ref("Finding")}
+	resource := all["DesignResource"].(object)["properties"].(object)
+	resource["design"] = object{"anyOf": []object{ref("Design"), {"type": "null"}}}
 	point := all["Point"].(object)["properties"].(object)
 	point["state"] = object{"type": "string", "enum": []string{"settled", "out_of_reach", "runaway"}}
 	point["mode"] = object{"type": "string", "enum": []string{"ccm", "dcm"}}
@@ -120,12 +122,12 @@ func designSchema() object {
 			within = descend(root, part)
 		}
 		for _, f := range part.Fields {
-			object := within
+			at := within
 			steps := strings.Split(f.Key, ".")
 			for _, step := range steps[:len(steps)-1] {
-				object = nested(object, step, f.Required)
+				at = nested(at, step, f.Required)
 			}
-			child(object, steps[len(steps)-1], fieldSchema(part, f), f.Required)
+			child(at, steps[len(steps)-1], fieldSchema(part, f), f.Required)
 		}
 	}
 	child(root, "sources", object{"type": "object", "additionalProperties": object{"type": "string"},
