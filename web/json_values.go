@@ -5,6 +5,7 @@ import (
 	"reflect"
 	"strconv"
 	"strings"
+	"sync"
 
 	"github.com/go-json-experiment/json/jsontext"
 
@@ -74,14 +75,14 @@ func (r *jsonReader) object(path string, kind jsontext.Kind, member func(name st
 }
 
 func (r *jsonReader) member(path, name string, v reflect.Value) error {
-	if field, ok := fieldNamed(v, name); ok {
-		return r.read(below(path, name), field)
+	if index, ok := placesOf(v.Type())[name]; ok {
+		return r.read(below(path, name), v.FieldByIndex(index))
 	}
-	words := "is no field of this format"
-	if like := fieldLike(v.Type(), name); like != "" {
-		words += fmt.Sprintf("; did you mean %q?", like)
+	if like := nameLike(v.Type(), name); like != "" {
+		r.refuse(below(path, name), "is no field of this format; did you mean %q?", like)
+	} else {
+		r.refuse(below(path, name), "is no field of this format")
 	}
-	r.refuse(below(path, name), "%s", words)
 	return r.skip()
 }
 
@@ -143,22 +144,30 @@ func atMost(t reflect.Type) int {
 	return budget.MaxRows
 }
 
-// fieldNamed finds the field of a struct by its JSON name, embedded structs
-// included.
-func fieldNamed(v reflect.Value, name string) (reflect.Value, bool) {
-	for _, f := range reflect.VisibleFields(v.Type()) {
-		if !f.Anonymous && jsonName(f) == name {
-			return v.FieldByIndex(f.Index), true
+// places keeps, for each struct type read so far, where each JSON name lies.
+var places sync.Map // reflect.Type → map[string][]int
+
+// placesOf finds the fields of a struct by their JSON names, those of embedded
+// structs included.
+func placesOf(t reflect.Type) map[string][]int {
+	if known, ok := places.Load(t); ok {
+		return known.(map[string][]int)
+	}
+	found := map[string][]int{}
+	for _, f := range reflect.VisibleFields(t) {
+		if !f.Anonymous {
+			found[jsonName(f)] = f.Index
 		}
 	}
-	return reflect.Value{}, false
+	places.Store(t, found)
+	return found
 }
 
-// fieldLike finds the name that was meant by one in the wrong case.
-func fieldLike(t reflect.Type, name string) string {
-	for _, f := range reflect.VisibleFields(t) {
-		if !f.Anonymous && strings.EqualFold(jsonName(f), name) {
-			return jsonName(f)
+// nameLike finds the name that was meant by one in the wrong case.
+func nameLike(t reflect.Type, name string) string {
+	for known := range placesOf(t) {
+		if strings.EqualFold(known, name) {
+			return known
 		}
 	}
 	return ""
