@@ -1,6 +1,27 @@
 package web
 
-import "math"
+import (
+	"context"
+	"math"
+)
+
+// outdated reports whether the model of this program says something else of a
+// revision's design than what was saved with it. The saved results stay.
+func (r *Revision) outdated(ctx context.Context) (bool, error) {
+	stored, err := r.rows()
+	if err != nil {
+		return false, err
+	}
+	design, err := readDesign(r.Design)
+	if err != nil {
+		return false, err
+	}
+	now, wrong, err := compute(ctx, design, nil)
+	if err != nil {
+		return false, err
+	}
+	return len(wrong) > 0 || differs(stored, now.Points), nil
+}
 
 // sameTo is how near, relatively, a recomputed figure must be to a stored one
 // to count as the same: rounding differs between processors, physics more.

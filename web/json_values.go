@@ -1,7 +1,6 @@
 package web
 
 import (
-	"fmt"
 	"reflect"
 	"strconv"
 	"strings"

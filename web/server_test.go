@@ -159,3 +159,13 @@ func TestUnknownAddressesAndMethods(t *testing.T) {
 		t.Errorf("an error of the API is %s", kind)
 	}
 }
+
+// recorded is a value as an answer, for read to take apart.
+func recorded(t *testing.T, value any) *httptest.ResponseRecorder {
+	t.Helper()
+	w := httptest.NewRecorder()
+	if err := writeJSON(w, http.StatusOK, value); err != nil {
+		t.Fatal(err)
+	}
+	return w
+}
