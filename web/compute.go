@@ -37,12 +37,26 @@ func compute(ctx context.Context, d *budget.Design, points []budget.Point) (Answ
 func answer(ctx context.Context, model *budget.Model, points []budget.Point) (Answer, []budget.FieldError, error) {
 	budgets := make([]budget.Budget, len(points))
 	rows := make([]Point, len(points))
+	var items []budget.Item // one ledger for all: with their terms, 10,000 would fill 150 MB
 	for i, p := range points {
 		if err := ctx.Err(); err != nil {
 			return Answer{}, nil, err
 		}
-		model.At(p, &budgets[i])
-		rows[i] = pointOf(&budgets[i], model.Findings(&budgets[i]))
+		b := &budgets[i]
+		b.Items = items
+		model.At(p, b)
+		rows[i] = pointOf(b, model.Findings(b))
+		items, b.Items = b.Items, outside(b.Items)
 	}
 	return Answer{rows, findingsOf(model.Review(budgets))}, nil, nil
+}
+
+// outside copies the items that a review of all points looks at.
+func outside(items []budget.Item) (marked []budget.Item) {
+	for i := range items {
+		if items[i].Outside {
+			marked = append(marked, items[i])
+		}
+	}
+	return marked
 }
