@@ -94,6 +94,17 @@ func TestWrongDesignsAreRefused(t *testing.T) {
 	}
 }
 
+// TestOneWordForOneField sends a text for a required number: that it is missing
+// too is not said.
+func TestOneWordForOneField(t *testing.T) {
+	s := newSite(t)
+	body := strings.Replace(text(t, designRequest{sample(t, "frost")}), `"frequency":250000`, `"frequency":"250k"`, 1)
+	p := read[problem](t, s.want(422, "POST", "/api/v1/budget", body))
+	if len(p.Errors) != 1 || p.Errors[0].Field != "design.frequency" || p.Errors[0].Message != "must be a number, not a text" {
+		t.Errorf("%+v", p.Errors)
+	}
+}
+
 func TestWrongPointsAreRefused(t *testing.T) {
 	s := newSite(t)
 	body := `{"design":` + text(t, sample(t, "frost")) + `,"points":[{"vin":12,"iout":1},{"vin":0,"iout":1},{"vin":12,"iout":-1},{"vin":12,"iout":1,"ambient":-300}]}`
@@ -171,6 +182,25 @@ func TestEveryPointHasEveryItem(t *testing.T) {
 	}
 	if settled < 300 {
 		t.Errorf("only %d points were checked", settled)
+	}
+}
+
+// TestMembersOfAPoint holds names and order to the contract.
+func TestMembersOfAPoint(t *testing.T) {
+	points := computed(t, sample(t, "fish")).Points
+	i := slices.IndexFunc(points, func(p Point) bool { return len(p.Findings) > 0 && p.Settled() })
+	if i < 0 {
+		t.Fatal("no point has a finding")
+	}
+	got, at := text(t, points[i]), 0
+	for _, name := range strings.Fields(`vin iout ambient vout state mode duty on_time pin pout loss efficiency iin
+		inductor_current mean min max rms switch_rms rectifier_rms rectifier_mean input_capacitor_rms output_capacitor_rms
+		temperatures switch rectifier inductor items part kind power findings level part rule message value limit source`) {
+		next := strings.Index(got[at:], `"`+name+`":`)
+		if next < 0 {
+			t.Fatalf("%s does not follow in %s", name, got[at:])
+		}
+		at += next + 1
 	}
 }
 

@@ -2,6 +2,8 @@ package web
 
 import (
 	"encoding/json"
+	"math"
+	"math/rand/v2"
 	"os"
 	"path/filepath"
 	"strings"
@@ -70,6 +72,35 @@ func TestDraftAndDesignAreTheSame(t *testing.T) {
 	}
 }
 
+// TestAnyNumberSurvivesADraft fills every number of the table with digits that
+// nobody would type, over all sizes.
+func TestAnyNumberSurvivesADraft(t *testing.T) {
+	random := rand.New(rand.NewPCG(1, 2))
+	numbers := 0
+	for range 50 {
+		d := new(budget.Design)
+		for _, part := range budget.Parts() {
+			for _, f := range part.Fields {
+				path := f.Path
+				if part.List {
+					path = part.Path + "[1]." + f.Key
+				}
+				slot, _ := d.Slot(path, true)
+				fill(slot, math.Ldexp(random.NormFloat64(), random.IntN(120)-90))
+				numbers++
+			}
+		}
+		d.Series[0].Name, d.Format = "first", budget.Format
+		back, _ := draftOf(d).design()
+		if diff := cmp.Diff(d, back); diff != "" {
+			t.Fatal(diff)
+		}
+	}
+	if numbers < 5000 {
+		t.Errorf("only %d numbers", numbers)
+	}
+}
+
 func TestEntriesAreReadByTheirUnit(t *testing.T) {
 	draft := draftOf(sample(t, "frost"))
 	draft["switch.rds_on"] = " 4m7 "
@@ -113,6 +144,10 @@ func TestEmptyRowsAreDropped(t *testing.T) {
 	}
 	if diff := cmp.Diff(budget.Curve{{25, 1}, {150, 1.8}}, d.Switch.RdsOnCurve); diff != "" {
 		t.Error(diff)
+	}
+	draft["inductor.ac_curve[9][0]"], draft["inductor.ac_curve[9][1]"] = "1M", "3"
+	if d, _ = draft.design(); d.Inductor != nil {
+		t.Errorf("a curve is read in part: %v", d.Inductor.ACCurve)
 	}
 	for _, path := range []string{"series_resistances[7].resistance", "inductor.ac_curve[3][1]", "inductor.ac_curve[5][0]"} {
 		if !hasError(wrong, path) {

@@ -63,6 +63,8 @@ func TestBodiesBeyondBounds(t *testing.T) {
 		{"at the limit", `"` + strings.Repeat("x", maxBody-2) + `"`, "application/json", 422},
 		{"deep objects", deep, "application/json", 400},
 		{"deep unknown member", `{"design":{"x":` + deep + `}}`, "application/json", 400},
+		{"a little too deep", `{"design":{"x":` + brackets(maxDepth-1) + `}}`, "application/json", 400},
+		{"as deep as may be", `{"design":{"x":` + brackets(maxDepth-2) + `}}`, "application/json", 422},
 		{"deep lists", lists, "application/json", 400},
 		{"a million unknown names", `{"design":{` + manyNames(200_000) + `}}`, "application/json", 422},
 		{"no type", "{}", "", 415},
@@ -83,6 +85,8 @@ func TestBodiesBeyondBounds(t *testing.T) {
 		t.Errorf("compressed: status %d", w.Code)
 	}
 }
+
+func brackets(deep int) string { return strings.Repeat("[", deep) + strings.Repeat("]", deep) }
 
 func manyNames(n int) string {
 	names := make([]string, n)

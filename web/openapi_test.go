@@ -47,6 +47,9 @@ func TestSchemaAndDecoderAgree(t *testing.T) {
 			t.Errorf("%s: %v", name, errs)
 		}
 	}
+	if errs := conforms(doc, "RevisionRequest", "{}"); len(errs) > 0 {
+		t.Errorf("a revision without a note: %v", errs)
+	}
 	files, err := filepath.Glob("../testdata/malformed/422-*.json")
 	if err != nil || len(files) < 15 {
 		t.Fatalf("%d files: %v", len(files), err)
