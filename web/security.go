@@ -14,8 +14,8 @@ import (
 const maxBody = 8 << 20
 
 // contentPolicy lets a page load what this server serves and nothing else. The
-// hashes are those of the fixed stylesheets the chart library writes.
-const contentPolicy = "default-src 'none'; script-src 'self'; style-src 'self' " + assets.ChartStyles +
+// one hash is that of the fixed stylesheet the chart library writes.
+const contentPolicy = "default-src 'none'; script-src 'self'; style-src 'self' " + assets.ChartStyle +
 	"; img-src 'self' data:; font-src 'self'; connect-src 'self'; base-uri 'none'; form-action 'self'; frame-ancestors 'none'"
 
 // secureHeaders sets what every answer carries. An asset, which is the same for
