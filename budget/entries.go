@@ -50,6 +50,24 @@ var fixedEntries = []entry{
 	{"controller", "fixed", noHeat, false, fixedLoss},
 }
 
+// Row names one item of the ledger.
+type Row struct{ Part, Kind string }
+
+// Ledger returns the items of a design's budget in their order: what every design
+// has, then its series resistances.
+func Ledger(d *Design) []Row {
+	var rows []Row
+	for _, e := range fixedEntries {
+		rows = append(rows, Row{e.part, e.kind})
+	}
+	for _, r := range d.Series {
+		rows = append(rows, Row{layoutPart, r.Name})
+	}
+	return rows
+}
+
+const layoutPart = "layout"
+
 // note records a term of the item; without an item it does nothing.
 func (it *Item) note(name string, value float64, unit string) {
 	if it == nil {
@@ -317,7 +335,7 @@ func fixedLoss(s *situation, it *Item) float64 {
 func (m *Model) seriesEntries() []entry {
 	var rows []entry
 	for _, r := range m.design.Series {
-		rows = append(rows, entry{"layout", r.Name, noHeat, true, func(s *situation, it *Item) float64 {
+		rows = append(rows, entry{layoutPart, r.Name, noHeat, true, func(s *situation, it *Item) float64 {
 			square := s.squareAt(r.Location)
 			it.note("I", math.Sqrt(square), "A")
 			it.note("R", r.Resistance.V, "Ω")

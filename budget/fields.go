@@ -52,6 +52,7 @@ type Part struct {
 	Name   string // its title on a sheet
 	Of     string // the part of the loss it belongs to: "switch", "inductor", …
 	List   bool   // an array of objects: series_resistances
+	Needed bool   // no design does without; diode and sync_switch depend on the rectifier
 	Fields []Field
 }
 
@@ -84,10 +85,10 @@ var parts = placed([]Part{
 		{Key: "ambient", Unit: "°C", Symbol: "T_a", Name: "Ambient", Where: "air around the enclosure, or around the board without one", Default: 25},
 		{Key: "enclosure_theta", Unit: "K/W", Symbol: "θ_enc", Name: "Enclosure to ambient", Where: "rise of the air at the parts per watt of the whole loss", Domain: NotNegative},
 	}},
-	{Path: "switch", Name: "Switch", Of: "switch", Fields: mosfetFields()},
+	{Path: "switch", Name: "Switch", Of: "switch", Needed: true, Fields: mosfetFields()},
 	{Path: "diode", Name: "Diode", Of: "rectifier", Fields: diodeFields()},
 	{Path: "sync_switch", Name: "Synchronous rectifier", Of: "rectifier", Fields: mosfetFields()},
-	{Path: "inductor", Name: "Inductor", Of: "inductor", Fields: []Field{
+	{Path: "inductor", Name: "Inductor", Of: "inductor", Needed: true, Fields: []Field{
 		partName("value, type and size"),
 		{Key: "inductance", Unit: "H", Symbol: "L", Name: "Inductance", Where: "at no current", Required: true, Domain: Positive},
 		{Key: "i_sat", Unit: "A", Symbol: "I_sat", Name: "Saturation current", Where: "the current at which the stated drop is reached", Domain: NotNegative},
@@ -125,7 +126,7 @@ var parts = placed([]Part{
 	{Path: "snubber", Name: "Snubber", Of: "snubber", Fields: []Field{
 		{Key: "capacitance", Unit: "F", Symbol: "C_sn", Name: "Snubber capacitor", Where: "charged and discharged through its resistor each cycle", Required: true, Domain: Positive},
 	}},
-	{Path: "drive", Name: "Gate drive", Of: "drive", Fields: []Field{
+	{Path: "drive", Name: "Gate drive", Of: "drive", Needed: true, Fields: []Field{
 		{Key: "voltage", Unit: "V", Symbol: "V_dr", Name: "Drive voltage", Where: "gate high, above the source", Required: true, Domain: Positive},
 		{Key: "voltage_off", Unit: "V", Symbol: "V_off", Name: "Gate voltage when off", Where: "0, or negative", Domain: NotPositive},
 		{Key: "r_source", Unit: "Ω", Symbol: "R_src", Name: "Driver, sourcing", Where: "pull-up resistance of the driver", Required: true, Domain: Positive},

@@ -14,7 +14,9 @@ func Validate(d *Design) []FieldError {
 	v := &verdict{design: d}
 	v.format()
 	for _, part := range parts {
-		v.part(part)
+		if part.Needed || d.uses(part.Path) {
+			v.part(part)
+		}
 	}
 	for _, rule := range rules {
 		rule(v)
@@ -79,8 +81,6 @@ func (v *verdict) format() {
 // part judges the fields of one part, each by itself.
 func (v *verdict) part(p Part) {
 	switch {
-	case !v.design.uses(p.Path):
-		return
 	case p.List:
 		for i := range v.design.Series {
 			v.fields(p, fmt.Sprintf("%s[%d].", p.Path, i))
@@ -92,10 +92,10 @@ func (v *verdict) part(p Part) {
 	}
 }
 
-// uses tells whether a part is in the design or must be.
+// uses tells whether a part that is not always needed is in the design or must be.
 func (d *Design) uses(path string) bool {
 	switch path {
-	case "", "switch", "inductor", "drive":
+	case "":
 		return true
 	case "diode":
 		return d.Rectifier == "diode"

@@ -3,7 +3,6 @@ package web
 import (
 	"encoding/json"
 	"reflect"
-	"slices"
 	"strings"
 	"time"
 
@@ -108,10 +107,6 @@ func typeSchema(t reflect.Type) object {
 	return object{"type": "number"}
 }
 
-// neededParts are the objects that no design does without; diode and
-// sync_switch depend on the rectifier.
-var neededParts = []string{"switch", "inductor", "drive"}
-
 // designSchema writes the table of fields as a schema.
 func designSchema() object {
 	root := emptyObject()
@@ -153,7 +148,7 @@ func descend(root object, part budget.Part) object {
 			child(at, step, list, false)
 			return list["items"].(object)
 		}
-		at = nested(at, step, slices.Contains(neededParts, part.Path))
+		at = nested(at, step, part.Needed)
 	}
 	at["title"] = part.Name
 	return at
