@@ -1,0 +1,165 @@
+package view
+
+// Sheet is the page on which a design is edited and its budget stands.
+type Sheet struct {
+	Page     Page
+	ID, Name string
+	State    string // "draft, 2 changes since revision 3"
+	Hidden   Hidden
+	Heading  string // of the error summary
+	Problems []Problem
+	Since    Since
+	Sections []Section
+	Whole    bool // a live answer replaces all entries: rows came or went
+	Stale    *Stale
+	Answers  Answers
+}
+
+// Href is the address of the sheet.
+func (s Sheet) Href() string { return "/designs/" + s.ID }
+
+// Hidden is what the form carries along: the version it was made from, which
+// entries it has, and the view that is shown.
+type Hidden struct{ Version, Structure, Vin, Ambient, Load, Scale string }
+
+// Stale says that the design was changed elsewhere since the form was drawn.
+type Stale struct{ Words, Theirs, Keep, Version string }
+
+// Since says what changed since the last revision, and what it did.
+type Since struct {
+	Title     string // "Since revision 3"
+	Changes   []Change
+	Unchanged string // said when there are none
+	Effect    string // "+0.11 points, −58 mW"
+	EffectAt  string // "at full load, 12 V in"
+	Note      string // typed beside the button
+	Keep      string // "Keep as revision 4", "" when it can't be kept
+	Why       string // why it can't
+	Send      string // where the button sends the form
+	Revisions []RevisionLine
+}
+
+// Change is one entry that differs from the last revision.
+type Change struct {
+	Symbol         Symbol
+	Label          string
+	From, To, Href string
+}
+
+// RevisionLine is one saved state in the list.
+type RevisionLine struct{ Name, Href, Note, When, Stamp string }
+
+// Answers is the right side: what comes of the entries.
+type Answers struct {
+	Wrong    []Problem // why these are the last good answers; none when they are current
+	Banner   string    // of a revision whose recomputation differs
+	Views    Views
+	Head     *Head
+	Charts   []Chart
+	Ledger   *Ledger
+	Findings []Finding
+	Sizing   *Sizing
+	Missing  []Problem
+}
+
+// Views are the choices of what is shown, kept in the address.
+type Views struct {
+	Href    string // where the form asks
+	Typed   bool   // any voltage and ambient may be typed, not only those listed
+	Vins    []Link
+	Vin     Field
+	Ambient Field
+	Load    Field
+	Scale   string // of the load axis, carried along
+	At      string // "12 V in, 2 A (100 %), 45 °C" in words
+}
+
+// Head holds the large figures.
+type Head struct {
+	Efficiency, Loss, Hottest, Temperature string
+	Vin, Load, Ambient                     string
+	Reason                                 string // why there are none
+}
+
+// Finding is one thing to be said, worst first.
+type Finding struct{ Level, Message, At, Source string }
+
+// Chart is one drawing with its table of numbers.
+type Chart struct {
+	ID, Kind, Title, Caption string
+	Data                     string // JSON for the drawing
+	Scale                    string
+	Scales                   []Link
+	Heads                    []string
+	Rows                     []Line
+}
+
+// Line is a row of plain figures under a heading.
+type Line struct {
+	Head  string
+	Cells []string
+}
+
+// Ledger is the table of loss items by load.
+type Ledger struct {
+	Caption string // "mW at 12 V in, 45 °C; shade: share of the column's loss"
+	Take    []Link
+	Columns []Column
+	Lines   []LedgerLine
+	Foot    []LedgerLine
+	Zero    string // names the items that are 0 at every load
+	Outside bool   // some figure is marked
+}
+
+// Column is one load.
+type Column struct {
+	Load   Link
+	Reason string // why it has no figures
+}
+
+// LedgerLine is a part's subtotal, one of its items, or a line of the foot.
+type LedgerLine struct {
+	Head, Class string
+	Square      bool // the part's colour stands before it
+	Cells       []LedgerCell
+}
+
+// LedgerCell is one figure; Class shades it by its share. A column without
+// figures has one Span cell that says why, over so many rows.
+type LedgerCell struct{ Text, Class, Span string }
+
+// Sizing is what can be said before the parts are chosen.
+type Sizing struct {
+	Ripple     string // "0.3"
+	Inductance string // "22.5 µH"
+	Used       string // of the currents, if another
+	Heads      []string
+	Rows       []Line
+	Error      []Problem // what keeps it from being worked out
+}
+
+// Revision is the page of a saved state.
+type Revision struct {
+	Page                  Page
+	ID, Number            string
+	Name, Note            string
+	When, Stamp           string
+	Model                 string
+	Previous, Next, Draft Link
+	Reopen                string
+	Lost                  string // what reopening it would drop
+	Parts                 []Given
+	Answers               Answers
+}
+
+// Given is a part with the values it was saved with.
+type Given struct {
+	Title, Class string
+	Values       []GivenValue
+}
+
+// GivenValue is one of them.
+type GivenValue struct {
+	Symbol               Symbol
+	Label, Value, Source string
+}
