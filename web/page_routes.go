@@ -6,6 +6,24 @@ import (
 	"lossbook/assets"
 )
 
+// pageRoutes are the addresses a person visits. Whatever changes something is a
+// POST, and answers with a redirect to a page that only shows.
 func pageRoutes(r chi.Router, s *Server) {
+	s.errorPage = failurePage
 	r.Get("/assets/*", assets.Handler().ServeHTTP)
+	r.Get("/", s.handle(s.listPage))
+	r.Post("/designs", s.handle(s.startDesign))
+	r.Post("/designs/upload", s.handle(s.uploadDesign))
+	const design = "/designs/{id:[0-9]+}"
+	r.Get(design, s.handle(s.sheetPage))
+	r.Post(design, s.handle(s.editSheet))
+	r.Get(design+"/rename", s.handle(s.renamePage))
+	r.Post(design+"/rename", s.handle(s.renameDesign))
+	r.Post(design+"/copy", s.handle(s.copyDesign))
+	r.Post(design+"/delete", s.handle(s.removeDesign))
+	r.Post(design+"/restore", s.handle(s.restoreDesign))
+	r.Post(design+"/revisions", s.handle(s.keepRevision))
+	const revision = design + "/revisions/{n:[0-9]+}"
+	r.Get(revision, s.handle(s.revisionPage))
+	r.Post(revision+"/reopen", s.handle(s.reopenRevision))
 }

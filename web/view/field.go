@@ -5,6 +5,7 @@ import "strings"
 // Field is one entry of a form.
 type Field struct {
 	Name     string // of the input: the JSON path
+	Key      string // what its ids end in, where that is not its name
 	Label    string
 	Symbol   Symbol
 	Value    string // as typed
@@ -47,7 +48,15 @@ type Cell struct {
 }
 
 // ID is the id of the entry's input, which links to it end in.
-func (f Field) ID() string { return "f-" + f.Name }
+func (f Field) ID() string { return "f-" + f.key() }
+
+// key is what the ids around the entry end in.
+func (f Field) key() string {
+	if f.Key != "" {
+		return f.Key
+	}
+	return f.Name
+}
 
 // class marks an entry that changed since the last revision or is wrong.
 func (f Field) class() string {
@@ -66,13 +75,13 @@ func (f Field) class() string {
 func (f Field) describedBy() string {
 	var ids []string
 	if f.Error != "" {
-		ids = append(ids, "e-"+f.Name)
+		ids = append(ids, "e-"+f.key())
 	}
 	if f.Read != "" {
-		ids = append(ids, "r-"+f.Name)
+		ids = append(ids, "r-"+f.key())
 	}
 	if f.Where != "" {
-		ids = append(ids, "w-"+f.Name)
+		ids = append(ids, "w-"+f.key())
 	}
 	return strings.Join(ids, " ")
 }
@@ -96,7 +105,7 @@ func (c Curve) first(f Field) string {
 	if len(c.Rows) > 0 {
 		return c.Rows[0].X.ID()
 	}
-	return "add-" + f.Name
+	return "add-" + f.key()
 }
 
 // invalid is an aria-invalid; it is always written, since a swap that keeps the
@@ -132,6 +141,7 @@ type Rows struct {
 // Row is one row of such a list.
 type Row struct {
 	Cells  []Cell
+	Source Cell
 	Remove string
 	Label  string // "Remove row 2"
 }

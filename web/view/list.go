@@ -29,7 +29,8 @@ func (e Entry) Href() string { return "/designs/" + e.ID }
 
 // Nameplate is the page on which a design gets another name.
 type Nameplate struct {
-	Page  Page
-	ID    string
-	Field Field
+	Page     Page
+	ID       string
+	Field    Field
+	Problems []Problem
 }

@@ -104,17 +104,11 @@ type Line struct {
 type Ledger struct {
 	Caption string // "mW at 12 V in, 45 °C; shade: share of the column's loss"
 	Take    []Link
-	Columns []Column
+	Columns []Link // the loads
 	Lines   []LedgerLine
 	Foot    []LedgerLine
 	Zero    string // names the items that are 0 at every load
 	Outside bool   // some figure is marked
-}
-
-// Column is one load.
-type Column struct {
-	Load   Link
-	Reason string // why it has no figures
 }
 
 // LedgerLine is a part's subtotal, one of its items, or a line of the foot.
@@ -124,9 +118,9 @@ type LedgerLine struct {
 	Cells       []LedgerCell
 }
 
-// LedgerCell is one figure; Class shades it by its share. A column without
-// figures has one Span cell that says why, over so many rows.
-type LedgerCell struct{ Text, Class, Span string }
+// LedgerCell is one figure; Class shades it by its share. Columns without
+// figures have one cell that says why, over so many rows and columns.
+type LedgerCell struct{ Text, Class, Rows, Columns string }
 
 // Sizing is what can be said before the parts are chosen.
 type Sizing struct {

@@ -1,0 +1,116 @@
+package web
+
+import (
+	"context"
+	"fmt"
+	"net/http"
+	"strconv"
+
+	"lossbook/budget"
+	"lossbook/store"
+	"lossbook/web/view"
+)
+
+// sheet is a design on its way to its page.
+type sheet struct {
+	kept      store.Design
+	draft     Draft               // the entries that are shown
+	design    *budget.Design      // as far as they can be read
+	wrong     []budget.FieldError // what keeps them from a budget
+	complete  *budget.Design      // the last complete state; nil if there was none
+	last      *milestone          // the last revision; nil if there is none
+	revisions []store.RevisionHead
+	sight     sight
+	note      string // typed for the next revision
+	demanded  bool   // what is missing is an error here
+	now       *Point // of the draft, at full load and nominal input, if it was computed
+}
+
+func (s *sheet) address() string { return sheetAddress(s.kept.ID) }
+
+// openSheet reads what a sheet shows besides its draft.
+func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, g sight) (*sheet, error) {
+	sh := &sheet{kept: kept, draft: draft, sight: g}
+	sh.design, sh.wrong = draft.design()
+	var err error
+	if len(kept.Complete) > 0 {
+		if sh.complete, err = readDesign(kept.Complete); err != nil {
+			return nil, err
+		}
+	}
+	if kept.LatestRevision == 0 {
+		return sh, nil
+	}
+	if sh.revisions, err = s.store.Revisions(ctx, kept.ID); err != nil {
+		return nil, err
+	}
+	latest, err := s.store.Revision(ctx, kept.ID, kept.LatestRevision)
+	if err != nil {
+		return nil, err
+	}
+	sh.last, err = milestoneOf(latest)
+	return sh, err
+}
+
+// model draws the whole page.
+func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
+	v := view.Sheet{Page: frame(nameOf(s.draft["name"])), ID: strconv.FormatInt(s.kept.ID, 10), Name: nameOf(s.draft["name"])}
+	bad, missing := parted(s.wrong)
+	v.Page.Failed = len(bad) > 0
+	b := formOf(s.draft, s.design, s.wrong, s.demanded)
+	b.send = s.address()
+	if s.last != nil {
+		b.was = s.last.entries
+	}
+	v.Sections = b.sections()
+	v.Hidden = s.sight.hidden()
+	v.Hidden.Version, v.Hidden.Structure = strconv.FormatInt(s.kept.Version, 10), s.draft.structure()
+	var err error
+	if v.Answers, err = s.answersOf(ctx); err != nil {
+		return v, err
+	}
+	if v.Since, err = s.since(ctx); err != nil {
+		return v, err
+	}
+	v.State = s.state(len(v.Since.Changes))
+	v.Heading, v.Problems = summary(bad, missing, s.demanded)
+	if s.demanded {
+		v.Page.Failed = true
+	}
+	return v, nil
+}
+
+// summary says what is wrong at the top of the page.
+func summary(bad, missing []budget.FieldError, demanded bool) (string, []view.Problem) {
+	if demanded {
+		return "This can’t be kept as a revision yet", problemsOf(append(bad, missing...), true)
+	}
+	return "Entries to correct", problemsOf(bad, true)
+}
+
+// state says in a word where the design stands.
+func (s *sheet) state(changes int) string {
+	switch {
+	case s.last == nil:
+		return "draft"
+	case changes == 0:
+		return fmt.Sprintf("revision %d", s.last.number)
+	}
+	return fmt.Sprintf("draft, %s since revision %d", plural(changes, "change", "changes"), s.last.number)
+}
+
+// draw answers with the sheet as a page, or with the pieces that a live edit
+// changes.
+func (s *sheet) draw(w http.ResponseWriter, r *http.Request, status int, adjust func(*view.Sheet)) error {
+	v, err := s.model(r.Context())
+	if err != nil {
+		return err
+	}
+	if adjust != nil {
+		adjust(&v)
+	}
+	if live(r) {
+		return show(w, r, status, view.SheetAnswer(v))
+	}
+	return show(w, r, status, view.SheetPage(v))
+}

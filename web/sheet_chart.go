@@ -1,0 +1,187 @@
+package web
+
+import (
+	"encoding/json"
+	"math"
+
+	"lossbook/web/quantity"
+	"lossbook/web/view"
+)
+
+// axis is a chart's axis as its element reads it.
+type axis struct {
+	Label string `json:"label"`
+	Unit  string `json:"unit"`
+}
+
+type efficiencyData struct {
+	Title  string   `json:"title"`
+	X      axis     `json:"x"`
+	Y      axis     `json:"y"`
+	Series []series `json:"series"`
+}
+
+type series struct {
+	Name   string  `json:"name"`
+	Dash   int     `json:"dash"`
+	Points [][]any `json:"points"` // [load, efficiency or null, 1 if outside a curve]
+}
+
+type stackData struct {
+	Title   string        `json:"title"`
+	X       axis          `json:"x"`
+	Y       axis          `json:"y"`
+	Parts   []stackPart   `json:"parts"`
+	Columns []stackColumn `json:"columns"`
+}
+
+type stackPart struct {
+	Name  string `json:"name"`
+	Class string `json:"cls"`
+}
+
+type stackColumn struct {
+	X       string    `json:"x"`
+	Values  []float64 `json:"values,omitempty"`
+	Total   string    `json:"total,omitempty"`
+	Reason  string    `json:"reason,omitempty"`
+	Outside bool      `json:"outside,omitempty"`
+}
+
+// charts draws efficiency and losses against load.
+func (p *picture) charts(base string) ([]view.Chart, error) {
+	efficiency, err := p.efficiencyChart(base)
+	if err != nil {
+		return nil, err
+	}
+	stack, err := p.stackChart()
+	return []view.Chart{efficiency, stack}, err
+}
+
+func (p *picture) loadAxis() axis {
+	return axis{"load, % of " + quantityOf(p.design.Output.Current.V, "A", 3), "%"}
+}
+
+func (p *picture) efficiencyChart(base string) (view.Chart, error) {
+	data := efficiencyData{Title: "Efficiency against load, by input voltage", X: p.loadAxis(), Y: axis{"efficiency, %", "%"}}
+	for _, l := range p.lines {
+		s := series{Name: quantityOf(l.vin, "V", 4), Dash: l.dash}
+		for _, q := range l.points {
+			s.Points = append(s.Points, q.drawn())
+		}
+		data.Series = append(data.Series, s)
+	}
+	text, err := json.Marshal(data)
+	c := view.Chart{ID: "chart-efficiency", Kind: "efficiency", Title: "Efficiency, %", Caption: "against load, % of " +
+		quantityOf(p.design.Output.Current.V, "A", 3) + ", by input voltage", Data: string(text), Scale: "log"}
+	linear := p.spot.scale == "lin"
+	if linear {
+		c.Scale = "lin"
+	}
+	c.Scales = []view.Link{
+		{Text: "log", Href: p.spot.scaled("").address(base), Here: !linear},
+		{Text: "linear", Href: p.spot.scaled("lin").address(base), Here: linear},
+	}
+	c.Heads, c.Rows = p.efficiencyTable()
+	return c, err
+}
+
+// drawn is the point as the chart reads it, in per cent, no finer than a
+// pixel can show.
+func (q linePoint) drawn() []any {
+	x := math.Round(q.load*1e6) / 1e4
+	switch {
+	case !q.settled:
+		return []any{x, nil}
+	case q.outside:
+		return []any{x, math.Round(q.efficiency*1e5) / 1e3, 1}
+	}
+	return []any{x, math.Round(q.efficiency*1e5) / 1e3}
+}
+
+// efficiencyTable is the same in numbers: a row a load of the grid.
+func (p *picture) efficiencyTable() (heads []string, rows []view.Line) {
+	heads = []string{"Load, %"}
+	for n, l := range p.lines {
+		heads = append(heads, "at "+quantityOf(l.vin, "V", 4)+", %")
+		row := 0
+		for _, q := range l.points {
+			if !q.grid {
+				continue
+			}
+			if n == 0 {
+				rows = append(rows, view.Line{Head: loadShare(q.load)})
+			}
+			rows[row].Cells = append(rows[row].Cells, q.written())
+			row++
+		}
+	}
+	return heads, rows
+}
+
+func (q linePoint) written() string {
+	switch {
+	case !q.settled:
+		return quantity.NoFigure
+	case q.outside:
+		return percent(q.efficiency) + " †"
+	}
+	return percent(q.efficiency)
+}
+
+func (p *picture) stackChart() (view.Chart, error) {
+	unit := wattsFor(p.columns)
+	if unit.unit == "mW" && mostLoss(p.columns) >= 1 {
+		unit = watts{"W", 1, 2} // the bars' totals then take fewest digits
+	}
+	data := stackData{Title: "Loss against load, by part", X: p.loadAxis(), Y: axis{"loss, " + unit.unit, unit.unit}}
+	c := view.Chart{ID: "chart-loss", Kind: "stack", Title: "Loss, " + unit.unit, Heads: []string{"Load, %"},
+		Caption: "against load, % of " + quantityOf(p.design.Output.Current.V, "A", 3) + ", at " + quantityOf(p.spot.vin, "V", 4) + " in"}
+	for _, g := range groups {
+		data.Parts = append(data.Parts, stackPart{g.title, g.class})
+		c.Heads = append(c.Heads, g.title)
+	}
+	c.Heads = append(c.Heads, "Loss, "+unit.unit)
+	for _, q := range p.columns {
+		column, row := p.stackColumn(q, unit)
+		data.Columns, c.Rows = append(data.Columns, column), append(c.Rows, row)
+	}
+	text, err := json.Marshal(data)
+	c.Data = string(text)
+	return c, err
+}
+
+func (p *picture) stackColumn(q Point, unit watts) (stackColumn, view.Line) {
+	share := loadShare(q.Iout / p.design.Output.Current.V)
+	column, row := stackColumn{X: share}, view.Line{Head: share}
+	if !q.Settled() {
+		column.Reason = q.Reason
+		for range len(groups) + 1 {
+			row.Cells = append(row.Cells, quantity.NoFigure)
+		}
+		return column, row
+	}
+	for _, g := range groups {
+		sum := 0.0
+		for _, it := range q.Items {
+			if classOf(it.Part) == g.class {
+				sum += it.Power
+			}
+		}
+		column.Values = append(column.Values, round(sum*unit.factor, 5))
+		row.Cells = append(row.Cells, unit.write(sum))
+	}
+	column.Total, column.Outside = unit.write(q.Loss), outsideACurve(q)
+	row.Cells = append(row.Cells, unit.write(q.Loss))
+	return column, row
+}
+
+func mostLoss(points []Point) float64 {
+	most := 0.0
+	for _, q := range points {
+		if q.Settled() {
+			most = max(most, q.Loss)
+		}
+	}
+	return most
+}

@@ -1,0 +1,171 @@
+package web
+
+import (
+	"context"
+	"encoding/json"
+	"fmt"
+	"slices"
+	"strings"
+	"time"
+
+	"lossbook/budget"
+	"lossbook/store"
+	"lossbook/web/quantity"
+	"lossbook/web/view"
+)
+
+// milestone is the last revision, as far as a sheet compares itself with it.
+type milestone struct {
+	number  int
+	design  *budget.Design
+	entries Draft  // the design's, in the one way of writing them
+	full    *Point // at nominal input and full load
+	note    string
+}
+
+// milestoneOf reads a revision for comparison.
+func milestoneOf(r store.Revision) (*milestone, error) {
+	d, err := readDesign(r.DesignJSON)
+	if err != nil {
+		return nil, err
+	}
+	var points []Point
+	if err := json.Unmarshal(r.Points, &points); err != nil {
+		return nil, fmt.Errorf("stored points: %w", err)
+	}
+	return &milestone{number: r.Number, design: d, entries: draftOf(d), full: fullLoad(d, points), note: r.Note}, nil
+}
+
+// since draws what changed since the last revision and what that did.
+func (s *sheet) since(ctx context.Context) (view.Since, error) {
+	v := view.Since{Title: "No revision kept yet", Note: s.note, Send: s.address() + "/revisions"}
+	if s.last != nil {
+		v.Title = fmt.Sprintf("Since revision %d", s.last.number)
+		v.Changes = s.readable(changes(s.last.entries, draftOf(s.design)))
+		if len(v.Changes) == 0 {
+			v.Unchanged = "Nothing has changed."
+		}
+	}
+	switch {
+	case len(s.wrong) == 0:
+		v.Keep = fmt.Sprintf("Keep as revision %d", s.kept.LatestRevision+1)
+		if err := s.effect(ctx, &v); err != nil {
+			return v, err
+		}
+	case len(s.wrong) == 1:
+		v.Why = "It can be kept as a revision once one more entry is right."
+	default:
+		v.Why = fmt.Sprintf("It can be kept as a revision once %d more entries are right.", len(s.wrong))
+	}
+	for _, h := range s.revisions {
+		v.Revisions = append(v.Revisions, view.RevisionLine{Name: fmt.Sprintf("Revision %d", h.Number), Note: h.Note,
+			Href: fmt.Sprintf("%s/revisions/%d", s.address(), h.Number), When: moment(h.CreatedAt), Stamp: h.CreatedAt.Format(time.RFC3339)})
+	}
+	return v, nil
+}
+
+// effect says what the changes did at full load and nominal input, whatever
+// else is looked at.
+func (s *sheet) effect(ctx context.Context, v *view.Since) error {
+	if s.last == nil || len(v.Changes) == 0 || s.last.full == nil || !s.last.full.Settled() {
+		return nil
+	}
+	now, err := s.fullNow(ctx)
+	if err != nil || now == nil || !now.Settled() {
+		return err
+	}
+	was := s.last.full
+	v.Effect = signed(100*(now.Efficiency-was.Efficiency), func(x float64) string { return decimals(x, 2) }) + " points, " +
+		signed(now.Loss-was.Loss, func(x float64) string { return quantity.Show(x, "W", 2) })
+	v.EffectAt = "at full load, " + quantityOf(now.Vin, "V", 4) + " in"
+	if now.Vin != was.Vin || now.Iout != was.Iout || now.Ambient != was.Ambient || now.Vout != was.Vout {
+		v.EffectAt = "at full load, each at its own nominal input, output and ambient"
+	}
+	return nil
+}
+
+// fullNow is the draft's point at its own nominal input, full load and ambient.
+func (s *sheet) fullNow(ctx context.Context) (*Point, error) {
+	d := s.design
+	if s.now != nil && s.now.Ambient == d.AmbientTemperature() {
+		return s.now, nil
+	}
+	found, _, err := compute(ctx, d, []budget.Point{{Vin: d.Input.Nominal.V, Iout: d.Output.Current.V, Ambient: d.AmbientTemperature()}})
+	if err != nil || len(found.Points) == 0 {
+		return nil, err
+	}
+	return &found.Points[0], nil
+}
+
+// changes lists the entries in which two designs differ, in the order of the
+// sheet. A curve that changed is one change.
+func changes(was, now Draft) []view.Change {
+	var list []view.Change
+	add := func(f budget.Field, path string) {
+		if was[path] != now[path] {
+			list = append(list, changed(f, path, was[path], now[path]))
+		}
+		if key := sources + path; was[key] != now[key] {
+			list = append(list, changed(budget.Field{Name: "Source of " + labelOf(path)}, key, was[key], now[key]))
+		}
+	}
+	for _, p := range budget.Parts() {
+		if p.List {
+			for i := range max(was.shownRows(p.Path), now.shownRows(p.Path)) {
+				for _, f := range p.Fields {
+					add(f, below(rowPath(p.Path, i), f.Key))
+				}
+			}
+			continue
+		}
+		for _, f := range p.Fields {
+			if f.Kind == budget.Rows {
+				list = append(list, curveChange(f, was, now)...)
+				continue
+			}
+			add(f, f.Path)
+		}
+	}
+	return list
+}
+
+// readable leaves out entries that could not be read: what they will be is not
+// known yet, and their place says what is wrong.
+func (s *sheet) readable(list []view.Change) []view.Change {
+	return slices.DeleteFunc(list, func(c view.Change) bool {
+		return slices.ContainsFunc(s.wrong, func(e budget.FieldError) bool { return !e.Missing && "#f-"+e.Path == c.Href })
+	})
+}
+
+func changed(f budget.Field, path, from, to string) view.Change {
+	c := view.Change{Symbol: symbolOf(f.Symbol), Label: f.Name, From: given(worded(f, from)), To: given(worded(f, to)), Href: "#f-" + path}
+	if c.Symbol.Base == "" && f.Path != "" {
+		c.Label = labelOf(path)
+	}
+	return c
+}
+
+// given shows an entry, or that there is none.
+func given(text string) string {
+	if blank(text) {
+		return "not given"
+	}
+	return text
+}
+
+func curveChange(f budget.Field, was, now Draft) []view.Change {
+	before, after := was.curveText(f.Path), now.curveText(f.Path)
+	if before == after {
+		return nil
+	}
+	return []view.Change{{Label: labelOf(f.Path), Href: "#f-" + f.Path,
+		From: plural(was.shownRows(f.Path), "row", "rows"), To: plural(now.shownRows(f.Path), "row", "rows") + ", other values"}}
+}
+
+func (t Draft) curveText(path string) string {
+	var text strings.Builder
+	for i := range t.shownRows(path) {
+		text.WriteString(t[cellPath(path, i, 0)] + "|" + t[cellPath(path, i, 1)] + "\n")
+	}
+	return text.String()
+}
