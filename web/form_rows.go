@@ -73,7 +73,7 @@ func (b form) listRow(p budget.Part, i int) view.Row {
 	r := view.Row{Remove: "remove:" + at, Label: "Remove " + strings.ToLower(label)}
 	for _, f := range p.Fields {
 		path := below(at, f.Key)
-		c := view.Cell{Name: path, Label: label + ", " + lowerFirst(f.Name), Value: b.draft[path], Error: b.wrong[path]}
+		c := view.Cell{Name: path, Label: label + ", " + f.Name, Value: b.draft[path], Error: b.wrong[path]}
 		if f.Kind == budget.Choice {
 			c.Options = choices(f, c.Value)
 		}

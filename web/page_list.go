@@ -79,7 +79,11 @@ func listEntry(ctx context.Context, d store.Design) (view.Entry, error) {
 	}
 	entry.Budget = efficiencyAt(fullLoad(design, found.Points))
 	if len(found.Findings) > 0 {
-		entry.Level, entry.Finding = found.Findings[0].Level, found.Findings[0].Message
+		worst := findingLines(found.Findings[:1])[0]
+		entry.Level, entry.Finding = worst.Level, worst.Message
+		if worst.Part != "" {
+			entry.Finding = worst.Part + ": " + worst.Message
+		}
 	}
 	return entry, nil
 }

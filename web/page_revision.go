@@ -88,7 +88,7 @@ func revisionModel(ctx context.Context, kept store.Design, saved store.Revision,
 	n := strconv.Itoa(saved.Number)
 	name := nameOf(design.Name)
 	page := view.Revision{
-		Page: frame(name + ", revision " + n), ID: strconv.FormatInt(kept.ID, 10), Number: n, Name: name, Note: saved.Note,
+		Page: frame(name + ", revision " + n), ID: strconv.FormatInt(kept.ID, 10), Number: n, Name: name, Note: saved.Note, About: design.Note,
 		When: moment(saved.CreatedAt), Stamp: saved.CreatedAt.Format(time.RFC3339),
 		Draft:  view.Link{Text: "the draft", Href: sheetAddress(kept.ID)},
 		Reopen: revisionAddress(kept.ID, saved.Number) + "/reopen",
@@ -154,13 +154,13 @@ func givenParts(d *budget.Design) []view.Given {
 	entries := draftOf(d)
 	var parts []view.Given
 	for _, p := range budget.Parts() {
-		g := view.Given{Title: p.Name, Class: classOf(p.Of)}
+		g := view.Given{Title: p.Name, Class: classOf(p.Of), Part: entries[below(p.Path, "part")]}
 		for _, f := range p.Fields {
-			if f.Key != "name" || p.Path != "" {
+			if f.Kind != budget.Text || p.List {
 				g.Values = append(g.Values, givenValues(p, f, entries)...)
 			}
 		}
-		if len(g.Values) > 0 {
+		if len(g.Values) > 0 || g.Part != "" {
 			parts = append(parts, g)
 		}
 	}

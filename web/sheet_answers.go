@@ -2,6 +2,7 @@ package web
 
 import (
 	"context"
+	"fmt"
 	"math"
 
 	"lossbook/budget"
@@ -15,10 +16,16 @@ func (p *picture) answers(base string, typed bool, take []view.Link) (view.Answe
 	if err != nil {
 		return view.Answers{}, err
 	}
-	return view.Answers{
-		Views: p.spot.views(p.design, base, typed, p.vins), Head: p.head(), Findings: findingLines(p.findings),
-		Charts: charts, Ledger: p.ledger(base, take),
-	}, nil
+	a := view.Answers{Views: p.spot.views(p.design, base, typed, p.vins), Head: p.head(), Charts: charts, Ledger: p.ledger(base, take)}
+	for _, f := range findingLines(p.findings) {
+		if f.Level == string(budget.Note) {
+			a.Notes = append(a.Notes, f)
+		} else {
+			a.Warnings = append(a.Warnings, f)
+		}
+	}
+	a.Count = plural(len(a.Notes), "note", "notes")
+	return a, nil
 }
 
 // head draws the large figures at the point looked at.
@@ -58,9 +65,9 @@ func (p *picture) hottest(t Temperatures) (words, temperature string) {
 		}
 	}
 	margin := worst.limit - worst.at
-	words = worst.name + ", " + decimals(math.Abs(margin), 0) + " K below its limit"
+	words = "nearest its limit: " + worst.name + ", " + decimals(margin, 0) + " K below"
 	if margin < 0 {
-		words = worst.name + ", " + decimals(-margin, 0) + " K above its limit"
+		words = "over its limit: " + worst.name + ", " + decimals(-margin, 0) + " K above"
 	}
 	return words, degrees(worst.at) + " °C"
 }
@@ -69,7 +76,7 @@ func (p *picture) hottest(t Temperatures) (words, temperature string) {
 func findingLines(findings []Finding) []view.Finding {
 	lines := make([]view.Finding, len(findings))
 	for i, f := range findings {
-		lines[i] = view.Finding{Level: f.Level, Message: f.Message, Source: f.Source}
+		lines[i] = view.Finding{Level: f.Level, Part: partWords[f.Part], Message: f.Message, Source: f.Source}
 		if f.Point != nil {
 			lines[i].At = "at " + quantityOf(f.Point.Vin, "V", 4) + " in, " + quantityOf(f.Point.Iout, "A", 3)
 		}
@@ -135,7 +142,7 @@ func (s *sheet) answersOf(ctx context.Context) (view.Answers, error) {
 		design = s.complete
 	}
 	if design == nil {
-		return view.Answers{Missing: problemsOf(missing, true), Sizing: sizing(s.draft, s.design), Wrong: nil}, nil
+		return view.Answers{Missing: missingParts(missing), Sizing: sizing(s.draft, s.design)}, nil
 	}
 	p, err := paint(ctx, design, s.sight)
 	if err != nil {
@@ -147,9 +154,9 @@ func (s *sheet) answersOf(ctx context.Context) (view.Answers, error) {
 		s.now = fullLoad(design, p.columns)
 	}
 	a, err := p.answers(s.address(), true, take)
-	a.Wrong = problemsOf(append(bad, missing...), true)
+	a.Wrong, a.WrongToo = few(problemsOf(append(bad, missing...), true))
 	if len(missing) > 0 {
-		a.Missing, a.Sizing = problemsOf(missing, true), sizing(s.draft, s.design)
+		a.Missing, a.Sizing = missingParts(missing), sizing(s.draft, s.design)
 	}
 	return a, err
 }
@@ -169,4 +176,13 @@ func parted(errs []budget.FieldError) (bad, missing []budget.FieldError) {
 		}
 	}
 	return bad, missing
+}
+
+// few keeps what can be read at a glance, and says how many more there are.
+func few(list []view.Problem) ([]view.Problem, string) {
+	const most = 3
+	if len(list) <= most+1 {
+		return list, ""
+	}
+	return list[:most], fmt.Sprintf("and %d more", len(list)-most)
 }

@@ -46,16 +46,11 @@ func (s *sheet) since(ctx context.Context) (view.Since, error) {
 			v.Unchanged = "Nothing has changed."
 		}
 	}
-	switch {
-	case len(s.wrong) == 0:
-		v.Keep = fmt.Sprintf("Keep as revision %d", s.kept.LatestRevision+1)
-		if err := s.effect(ctx, &v); err != nil {
-			return v, err
-		}
-	case len(s.wrong) == 1:
-		v.Why = "It can be kept as a revision once one more entry is right."
-	default:
-		v.Why = fmt.Sprintf("It can be kept as a revision once %d more entries are right.", len(s.wrong))
+	v.Keep = fmt.Sprintf("Keep as revision %d", s.kept.LatestRevision+1)
+	if len(s.wrong) > 0 {
+		v.Why = "To be kept, it needs " + plural(len(s.wrong), "more entry", "more entries") + " put right."
+	} else if err := s.effect(ctx, &v); err != nil {
+		return v, err
 	}
 	for _, h := range s.revisions {
 		v.Revisions = append(v.Revisions, view.RevisionLine{Name: fmt.Sprintf("Revision %d", h.Number), Note: h.Note,

@@ -6,7 +6,6 @@ import (
 	"strconv"
 	"strings"
 	"time"
-	"unicode/utf8"
 
 	"lossbook/budget"
 	"lossbook/web/quantity"
@@ -71,9 +70,9 @@ func grouped(text string) string {
 }
 
 // quantityOf writes a value as it would be entered: up to so many digits, without
-// zeros that say nothing.
+// zeros that say nothing. Number and unit stay on one line.
 func quantityOf(v float64, unit quantity.Unit, digits int) string {
-	return quantity.Format(round(v, digits), unit)
+	return strings.ReplaceAll(quantity.Format(round(v, digits), unit), " ", "\u00a0")
 }
 
 // round keeps so many significant digits.
@@ -156,6 +155,25 @@ func problemsOf(errs []budget.FieldError, links bool) []view.Problem {
 	return problems
 }
 
+// missingParts groups what is missing by part. Only what is not plainly required
+// needs a word why it is asked for.
+func missingParts(errs []budget.FieldError) []view.MissingPart {
+	var parts []view.MissingPart
+	for _, e := range errs {
+		title, label := partAndName(e.Path)
+		if len(parts) == 0 || parts[len(parts)-1].Title != title {
+			parts = append(parts, view.MissingPart{Title: title})
+		}
+		entry := view.Problem{Label: label, Href: "#f-" + e.Path}
+		if f, _ := budget.FieldAt(e.Path); !f.Required {
+			entry.Message = e.Message
+		}
+		last := &parts[len(parts)-1]
+		last.Entries = append(last.Entries, entry)
+	}
+	return parts
+}
+
 // labelOf names the entry at a path as its sheet does, with its part where the
 // name alone would not tell.
 func labelOf(path string) string {
@@ -165,16 +183,28 @@ func labelOf(path string) string {
 	if field, ok := strings.CutPrefix(path, sources); ok {
 		return "Source of " + labelOf(field)
 	}
+	title, name := partAndName(path)
+	if title == stageTitle {
+		return name
+	}
+	return title + ": " + name
+}
+
+// stageTitle heads the design's own fields.
+var stageTitle = budget.Parts()[0].Name
+
+// partAndName names the part of the entry at a path, and the entry within it.
+func partAndName(path string) (title, name string) {
 	f, ok := budget.FieldAt(path)
 	if !ok {
-		return path
+		return stageTitle, path
 	}
 	for _, p := range budget.Parts() {
 		if p.Path != "" && f.Path == below(p.Path, f.Key) {
-			return p.Name + rowNumber(path) + ", " + lowerFirst(f.Name)
+			return p.Name, f.Name + rowNumber(path)
 		}
 	}
-	return f.Name + rowNumber(path)
+	return stageTitle, f.Name
 }
 
 // rowNumber says which row of a list or curve a path is in, counted from 1.
@@ -189,15 +219,4 @@ func rowNumber(path string) string {
 		return ""
 	}
 	return fmt.Sprintf(", row %d", i+1)
-}
-
-// lowerFirst lets a label stand within a sentence, unless its second letter
-// shows that the first is a sign or an abbreviation ("AC", "ESR").
-func lowerFirst(label string) string {
-	first, size := utf8.DecodeRuneInString(label)
-	rest := label[size:]
-	if rest == "" || strings.ToLower(rest[:1]) != rest[:1] {
-		return label
-	}
-	return strings.ToLower(string(first)) + rest
 }

@@ -52,14 +52,17 @@ type RevisionLine struct{ Name, Href, Note, When, Stamp string }
 // Answers is the right side: what comes of the entries.
 type Answers struct {
 	Wrong    []Problem // why these are the last good answers; none when they are current
+	WrongToo string    // how many more reasons there are
 	Banner   string    // of a revision whose recomputation differs
 	Views    Views
 	Head     *Head
 	Charts   []Chart
 	Ledger   *Ledger
-	Findings []Finding
+	Warnings []Finding // exceeded ratings and cautions, worst first
+	Notes    []Finding
+	Count    string // "4 notes"
 	Sizing   *Sizing
-	Missing  []Problem
+	Missing  []MissingPart
 }
 
 // Views are the choices of what is shown, kept in the address.
@@ -82,7 +85,7 @@ type Head struct {
 }
 
 // Finding is one thing to be said, worst first.
-type Finding struct{ Level, Message, At, Source string }
+type Finding struct{ Level, Part, Message, At, Source string }
 
 // Chart is one drawing with its table of numbers.
 type Chart struct {
@@ -122,6 +125,12 @@ type LedgerLine struct {
 // figures have one cell that says why, over so many rows and columns.
 type LedgerCell struct{ Text, Class, Rows, Columns string }
 
+// MissingPart is a part with the entries it lacks.
+type MissingPart struct {
+	Title   string
+	Entries []Problem
+}
+
 // Sizing is what can be said before the parts are chosen.
 type Sizing struct {
 	Ripple     string // "0.3"
@@ -136,7 +145,7 @@ type Sizing struct {
 type Revision struct {
 	Page                  Page
 	ID, Number            string
-	Name, Note            string
+	Name, Note, About     string
 	When, Stamp           string
 	Model                 string
 	Previous, Next, Draft Link
@@ -149,6 +158,7 @@ type Revision struct {
 // Given is a part with the values it was saved with.
 type Given struct {
 	Title, Class string
+	Part         string // what it is, in words
 	Values       []GivenValue
 }
 
