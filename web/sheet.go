@@ -93,6 +93,8 @@ func (s *sheet) state(changes int) string {
 	switch {
 	case s.last == nil:
 		return "draft"
+	case len(s.wrong) > 0:
+		return fmt.Sprintf("draft since revision %d", s.last.number)
 	case changes == 0:
 		return fmt.Sprintf("revision %d", s.last.number)
 	}
