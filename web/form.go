@@ -154,7 +154,7 @@ func (b form) field(f budget.Field, path string) view.Field {
 	case budget.Rows:
 		field.Value, field.Curve = "", b.curve(f, path)
 	case budget.Text:
-		field.Source = nil
+		field.Source, field.Wide = nil, true
 	}
 	field.Was = b.before(f, path)
 	return field

@@ -27,7 +27,7 @@ func (s *Server) renamePage(w http.ResponseWriter, r *http.Request) error {
 func showRename(w http.ResponseWriter, r *http.Request, status int, kept store.Design, typed, wrong string) error {
 	f, _ := budget.FieldAt("name")
 	page := view.Nameplate{Page: frame("Rename " + nameOf(kept.Name)), ID: strconv.FormatInt(kept.ID, 10),
-		Field: view.Field{Name: "name", Label: f.Name, Where: f.Where, Value: typed, Error: wrong, Required: true}}
+		Field: view.Field{Name: "name", Label: f.Name, Where: f.Where, Value: typed, Error: wrong, Required: true, Wide: true}}
 	page.Page.Failed = wrong != ""
 	if wrong != "" {
 		page.Problems = []view.Problem{{Label: f.Name, Message: wrong, Href: "#f-name"}}

@@ -91,11 +91,16 @@ func sizing(t Draft, d *budget.Design) *view.Sizing {
 	if wrong = append(lacking, wrong...); len(wrong) > 0 {
 		return &view.Sizing{Error: problemsOf(wrong, true)}
 	}
-	s := &view.Sizing{Ripple: quantity.Show(size.Ripple, "", 3), Inductance: quantity.Show(size.Inductance, "H", 3)}
+	s := &view.Sizing{Ripple: quantityOf(size.Ripple, "", 3), Inductance: quantity.Show(size.Inductance, "H", 3)}
 	if size.Used != size.Inductance {
 		s.Used = quantity.Show(size.Used, "H", 3)
 	}
 	s.Heads, s.Rows = requirements(size.Parts)
+	for _, p := range size.Parts {
+		if p.Part == "switch" {
+			s.Duty = decimals(100*p.DutyMin, 1) + " to " + decimals(100*p.DutyMax, 1) + " %"
+		}
+	}
 	return s
 }
 

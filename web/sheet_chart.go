@@ -4,49 +4,10 @@ import (
 	"encoding/json"
 	"math"
 
+	"lossbook/assets"
 	"lossbook/web/quantity"
 	"lossbook/web/view"
 )
-
-// axis is a chart's axis as its element reads it.
-type axis struct {
-	Label string `json:"label"`
-	Unit  string `json:"unit"`
-}
-
-type efficiencyData struct {
-	Title  string   `json:"title"`
-	X      axis     `json:"x"`
-	Y      axis     `json:"y"`
-	Series []series `json:"series"`
-}
-
-type series struct {
-	Name   string  `json:"name"`
-	Dash   int     `json:"dash"`
-	Points [][]any `json:"points"` // [load, efficiency or null, 1 if outside a curve]
-}
-
-type stackData struct {
-	Title   string        `json:"title"`
-	X       axis          `json:"x"`
-	Y       axis          `json:"y"`
-	Parts   []stackPart   `json:"parts"`
-	Columns []stackColumn `json:"columns"`
-}
-
-type stackPart struct {
-	Name  string `json:"name"`
-	Class string `json:"cls"`
-}
-
-type stackColumn struct {
-	X       string    `json:"x"`
-	Values  []float64 `json:"values,omitempty"`
-	Total   string    `json:"total,omitempty"`
-	Reason  string    `json:"reason,omitempty"`
-	Outside bool      `json:"outside,omitempty"`
-}
 
 // charts draws efficiency and losses against load.
 func (p *picture) charts(base string) ([]view.Chart, error) {
@@ -58,14 +19,14 @@ func (p *picture) charts(base string) ([]view.Chart, error) {
 	return []view.Chart{efficiency, stack}, err
 }
 
-func (p *picture) loadAxis() axis {
-	return axis{"load, % of " + quantityOf(p.design.Output.Current.V, "A", 3), "%"}
+func (p *picture) loadAxis() assets.Axis {
+	return assets.Axis{Label: "load, % of " + quantityOf(p.design.Output.Current.V, "A", 3), Unit: "%"}
 }
 
 func (p *picture) efficiencyChart(base string) (view.Chart, error) {
-	data := efficiencyData{Title: "Efficiency against load, by input voltage", X: p.loadAxis(), Y: axis{"efficiency, %", "%"}}
+	data := assets.Lines{Title: "Efficiency against load, by input voltage", X: p.loadAxis(), Y: assets.Axis{Label: "efficiency, %", Unit: "%"}}
 	for _, l := range p.lines {
-		s := series{Name: quantityOf(l.vin, "V", 4), Dash: l.dash}
+		s := assets.Line{Name: quantityOf(l.vin, "V", 4), Dash: l.dash}
 		for _, q := range l.points {
 			s.Points = append(s.Points, q.drawn())
 		}
@@ -88,15 +49,8 @@ func (p *picture) efficiencyChart(base string) (view.Chart, error) {
 
 // drawn is the point as the chart reads it, in per cent, no finer than a
 // pixel can show.
-func (q linePoint) drawn() []any {
-	x := math.Round(q.load*1e6) / 1e4
-	switch {
-	case !q.settled:
-		return []any{x, nil}
-	case q.outside:
-		return []any{x, math.Round(q.efficiency*1e5) / 1e3, 1}
-	}
-	return []any{x, math.Round(q.efficiency*1e5) / 1e3}
+func (q linePoint) drawn() assets.Point {
+	return assets.Point{X: math.Round(q.load*1e6) / 1e4, Y: math.Round(q.efficiency*1e5) / 1e3, None: !q.settled, Outside: q.outside}
 }
 
 // efficiencyTable is the same in numbers: a row a load of the grid.
@@ -134,11 +88,11 @@ func (p *picture) stackChart() (view.Chart, error) {
 	if unit.unit == "mW" && mostLoss(p.columns) >= 1 {
 		unit = watts{"W", 1, 2} // the bars' totals then take fewest digits
 	}
-	data := stackData{Title: "Loss against load, by part", X: p.loadAxis(), Y: axis{"loss, " + unit.unit, unit.unit}}
+	data := assets.Stack{Title: "Loss against load, by part", X: p.loadAxis(), Y: assets.Axis{Label: "loss, " + unit.unit, Unit: unit.unit}}
 	c := view.Chart{ID: "chart-loss", Kind: "stack", Title: "Loss, " + unit.unit, Heads: []string{"Load, %"},
 		Caption: "against load, % of " + quantityOf(p.design.Output.Current.V, "A", 3) + ", at " + quantityOf(p.spot.vin, "V", 4) + " in"}
 	for _, g := range groups {
-		data.Parts = append(data.Parts, stackPart{g.title, g.class})
+		data.Parts = append(data.Parts, assets.Part{Name: g.title, Class: g.class})
 		c.Heads = append(c.Heads, g.title)
 	}
 	c.Heads = append(c.Heads, "Loss, "+unit.unit)
@@ -151,11 +105,11 @@ func (p *picture) stackChart() (view.Chart, error) {
 	return c, err
 }
 
-func (p *picture) stackColumn(q Point, unit watts) (stackColumn, view.Line) {
+func (p *picture) stackColumn(q Point, unit watts) (assets.Column, view.Line) {
 	share := loadShare(q.Iout / p.design.Output.Current.V)
-	column, row := stackColumn{X: share}, view.Line{Head: share}
+	column, row := assets.Column{X: share}, view.Line{Head: share}
 	if !q.Settled() {
-		column.Reason = q.Reason
+		column.Reason = stateWords(q)
 		for range len(groups) + 1 {
 			row.Cells = append(row.Cells, quantity.NoFigure)
 		}

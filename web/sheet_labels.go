@@ -44,6 +44,14 @@ func itemWords(it Item) string {
 	return strings.ReplaceAll(it.Kind, "_", " ")
 }
 
+// stateWords say in short why a point has no figures; its reason says it in full.
+func stateWords(q Point) string {
+	if q.State == budget.Runaway.String() {
+		return "runs away"
+	}
+	return "out of reach"
+}
+
 // problemsOf words field errors for a summary. With links each leads to its
 // entry; without, the path is said, as in a file there is nothing to lead to.
 func problemsOf(errs []budget.FieldError, links bool) []view.Problem {

@@ -77,6 +77,9 @@ func (p *picture) ledger(base string, take []view.Link) *view.Ledger {
 		l.Lines = append(l.Lines, lines...)
 		zero = append(zero, nothing...)
 	}
+	if !slices.ContainsFunc(p.columns, func(q Point) bool { return q.Settled() }) {
+		l.Lines = []view.LedgerLine{{Head: "no figures", Cells: make([]view.LedgerCell, len(p.columns))}}
+	}
 	if len(zero) > 0 {
 		l.Zero = "0 at every load: " + strings.Join(zero, ", ") + "."
 	}
@@ -172,9 +175,6 @@ func shade(power, loss float64) string {
 // explainGaps puts the reason in place of the figures of columns without any,
 // across all rows; neighbours with the same reason share it.
 func (p *picture) explainGaps(l *view.Ledger) {
-	if len(l.Lines) == 0 {
-		return
-	}
 	rows := strconv.Itoa(len(l.Lines))
 	for n := range l.Lines {
 		var cells []view.LedgerCell

@@ -17,6 +17,7 @@ type Field struct {
 	Error    string
 	Required bool
 	Numeric  bool
+	Wide     bool     // a text that wants room
 	Options  []Option // of a choice
 	Curve    *Curve   // of rows; Value is unused then
 	Source   *Source  // where the value comes from
@@ -66,6 +67,9 @@ func (f Field) class() string {
 	}
 	if f.Error != "" {
 		class += " bad"
+	}
+	if f.Wide {
+		class += " wide"
 	}
 	return class
 }

@@ -27,7 +27,7 @@ func ledger(l Ledger) templ.Component {
 		}
 		ctx = templ.InitializeContext(ctx)
 		ctx = templ.ClearChildren(ctx)
-		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 1, "<section aria-labelledby=\"ledger-title\"><h2 id=\"ledger-title\" class=\"vh\">Ledger</h2><div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-labelledby=\"ledger-title\"><table class=\"ledger\"><caption><b>Ledger</b> <span>")
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 1, "<section aria-labelledby=\"ledger-title\"><h2 id=\"ledger-title\" class=\"vh\">Ledger</h2><div class=\"scroll\" tabindex=\"0\" role=\"region\" aria-label=\"Table of losses\"><table class=\"ledger\"><caption><b>Ledger</b> <span>")
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}

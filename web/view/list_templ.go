@@ -109,7 +109,7 @@ func entries(list []Entry) templ.Component {
 		}
 		ctx = templ.InitializeContext(ctx)
 		ctx = templ.ClearChildren(ctx)
-		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 6, "<div class=\"scroll\" role=\"region\" aria-labelledby=\"designs\" tabindex=\"0\"><table class=\"list\"><thead><tr><th scope=\"col\">Design</th><th scope=\"col\">Converter</th><th scope=\"col\" class=\"num\">Efficiency, %</th><th scope=\"col\">Worst finding</th><th scope=\"col\">Kept</th><th scope=\"col\">Changed</th><th scope=\"col\"><span class=\"vh\">Actions</span></th></tr></thead> <tbody>")
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 6, "<div class=\"scroll\" role=\"region\" aria-label=\"Table of designs\" tabindex=\"0\"><table class=\"list\"><thead><tr><th scope=\"col\">Design</th><th scope=\"col\">Converter</th><th scope=\"col\" class=\"num\">Efficiency, %</th><th scope=\"col\">Worst finding</th><th scope=\"col\">Kept</th><th scope=\"col\">Changed</th><th scope=\"col\"><span class=\"vh\">Actions</span></th></tr></thead> <tbody>")
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}

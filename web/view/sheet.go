@@ -136,6 +136,7 @@ type Sizing struct {
 	Ripple     string // "0.3"
 	Inductance string // "22.5 µH"
 	Used       string // of the currents, if another
+	Duty       string // of the switch, over the input range
 	Heads      []string
 	Rows       []Line
 	Error      []Problem // what keeps it from being worked out
