@@ -53,7 +53,7 @@ func TestKeepUnfinished(t *testing.T) {
 	if !strings.HasPrefix(p.title(), "Error: ") {
 		t.Errorf("title %q", p.title())
 	}
-	stale := s.open(200, "/designs/1").form("entries", map[string]string{"version": "1"})
+	stale := s.open(200, "/designs/1").form("entries", map[string]string{"version": "1", "inductor.dcr": "20m"})
 	s.page(409, s.send("/designs/1/revisions", stale), "a stale keep")
 	if heads, _ := s.store.Revisions(t.Context(), 1); len(heads) != 1 {
 		t.Errorf("%d revisions", len(heads))

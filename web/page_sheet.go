@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"maps"
 	"net/http"
 	"strconv"
 	"strings"
@@ -86,12 +87,16 @@ func (s *Server) take(r *http.Request) (edit, *sheet, error) {
 	if err != nil {
 		return e, nil, err
 	}
-	draft, err := readDraft(kept.Draft)
+	before, err := readDraft(kept.Draft)
 	if err != nil {
 		return e, nil, err
 	}
-	if draft, err = e.apply(draft); err != nil {
+	draft, err := e.apply(before)
+	if err != nil {
 		return e, nil, err
+	}
+	if maps.Equal(draft, before) { // nothing to overwrite, whichever version it came from
+		e.version = kept.Version
 	}
 	saved, failed := s.keepDraft(r.Context(), kept.ID, e.version, draft)
 	if failed == nil {

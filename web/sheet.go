@@ -73,6 +73,7 @@ func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 		return v, err
 	}
 	v.State = s.state(len(v.Since.Changes))
+	v.Foot = v.Name + " · " + v.State + " · " + moment(s.kept.UpdatedAt)
 	v.Heading, v.Problems = summary(bad, missing, s.demanded)
 	if s.demanded {
 		v.Page.Failed = true

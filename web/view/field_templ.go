@@ -1226,7 +1226,7 @@ func rowButton(send, id, do, word, label string) templ.Component {
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}
-		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 99, "\" hx-target=\"#trouble\" hx-sync=\"closest form:replace\" hx-status:50x=\"target:#trouble\">")
+		templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 99, "\" hx-target=\"#trouble\" hx-sync=\"closest form:queue last\" hx-status:50x=\"target:#trouble\">")
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}

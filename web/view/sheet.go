@@ -5,6 +5,7 @@ type Sheet struct {
 	Page     Page
 	ID, Name string
 	State    string // "draft, 2 changes since revision 3"
+	Foot     string // of every printed page
 	Hidden   Hidden
 	Heading  string // of the error summary
 	Problems []Problem

@@ -9,6 +9,8 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+
+	"github.com/a-h/templ"
 )
 
 // Whatever a template draws is escaped: none may write raw HTML, and none may
@@ -65,6 +67,21 @@ func TestTitleSaysError(t *testing.T) {
 	for want, p := range map[string]Page{"Mast · Lossbook": {Title: "Mast"}, "Error: Mast · Lossbook": {Title: "Mast", Failed: true}} {
 		if got := p.title(); got != want {
 			t.Errorf("%q, want %q", got, want)
+		}
+	}
+}
+
+// Without this policy a browser names no origin when a form is sent without a
+// script, and the server refuses it.
+func TestPagesNameTheirOrigin(t *testing.T) {
+	for name, page := range map[string]templ.Component{"list": Designs(List{}), "sheet": SheetPage(Sheet{}), "revision": RevisionPage(Revision{}),
+		"rename": Rename(Nameplate{}), "error": Failure(Fault{})} {
+		var b bytes.Buffer
+		if err := page.Render(t.Context(), &b); err != nil {
+			t.Fatal(err)
+		}
+		if !strings.Contains(b.String(), `<meta name="referrer" content="same-origin">`) {
+			t.Errorf("%s does not", name)
 		}
 	}
 }
