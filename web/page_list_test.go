@@ -88,6 +88,9 @@ func TestDeleteAndUndo(t *testing.T) {
 	if p.has("design-2") {
 		t.Error("the design is still listed")
 	}
+	if p := s.open(200, "/?deleted=1"); len(p.all(withClass("notice"))) != 0 {
+		t.Error("an address claims a deletion that was not")
+	}
 	s.page(404, s.ask("GET", "/designs/2", ""), "the sheet of a deleted design")
 	s.page(404, s.send("/designs/2/delete", nil), "a second delete")
 	undo := find(notice[0], tag("form"))[0]
