@@ -60,7 +60,9 @@ func heading(name, unit string) string {
 func (b form) list(p budget.Part) *view.Rows {
 	l := &view.Rows{Of: p.Path, Send: b.send, Add: "add:" + p.Path, Word: "add a row"}
 	for _, f := range p.Fields {
-		l.Heads = append(l.Heads, heading(f.Name, f.Unit))
+		if f.Kind != budget.Text {
+			l.Heads = append(l.Heads, heading(f.Name, f.Unit))
+		}
 	}
 	for i := range b.draft.shownRows(p.Path) {
 		l.Rows = append(l.Rows, b.listRow(p, i))
@@ -80,6 +82,10 @@ func (b form) listRow(p budget.Part, i int) view.Row {
 		if f.Kind == budget.Number {
 			source := sources + path
 			r.Source = view.Cell{Name: source, Label: label, Value: b.draft[source]}
+		}
+		if f.Kind == budget.Text {
+			r.Title = c
+			continue
 		}
 		r.Cells = append(r.Cells, c)
 	}

@@ -1,6 +1,9 @@
 package view
 
-import "strings"
+import (
+	"strconv"
+	"strings"
+)
 
 // Field is one entry of a form.
 type Field struct {
@@ -142,8 +145,13 @@ type Rows struct {
 	Word  string // on the button
 }
 
-// Row is one row of such a list.
+// Width is how many columns the table has, the one of its buttons included.
+func (r Rows) Width() string { return strconv.Itoa(len(r.Heads) + 1) }
+
+// Row is one row of such a list: what it is called on a line of its own, which
+// wants room, and the rest below.
 type Row struct {
+	Title  Cell
 	Cells  []Cell
 	Source Cell
 	Remove string
