@@ -38,6 +38,13 @@
     }
   });
 
+  // An edit that waited for the one before it carries the version which that one's
+  // answer brought, not the one that stood when it was typed.
+  document.addEventListener('htmx:before:request', ({detail: {ctx}}) => {
+    const version = document.querySelector('#carried [name=version]');
+    if (version && ctx.request.body?.has?.('version')) ctx.request.body.set('version', version.value);
+  });
+
   // Pasting a curve
 
   // The cells of pasted text: by tab, else semicolon, else comma, else blanks. A
