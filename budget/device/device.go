@@ -4,7 +4,8 @@
 package device
 
 // Curve is a quantity over another, as a data sheet draws it. outside is true
-// where x lies beyond the rows and the end value was held.
+// where x lies beyond the rows and the end value was held; x and y are in the
+// units of the rows.
 type Curve interface {
 	At(x float64) (y float64, outside bool)
 }

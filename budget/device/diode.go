@@ -30,8 +30,8 @@ type Leakage struct {
 	Doubling    float64 // K, in which it doubles
 }
 
-// Growth returns 2^((Tj − T_0)/ΔT_2), what temperature makes of the stated
-// leakage. It overflows to infinity where a junction has run away.
+// Growth returns 2^((Tj − T_0)/ΔT_2), the factor by which the junction temperature
+// tj (°C) raises the stated leakage. It overflows to infinity where a junction has run away.
 func (l Leakage) Growth(tj float64) float64 {
 	return math.Exp2((tj - l.Temperature) / l.Doubling)
 }
@@ -51,7 +51,8 @@ func (l Leakage) Loss(growth, d1, on, d3, rest float64) float64 {
 	return l.Current * growth / l.Voltage * (d1*on*on + d3*rest*rest)
 }
 
-// BodyDiode is the forward line of a MOSFET's body diode, used in dead times.
+// BodyDiode is the forward line of a MOSFET's body diode, used in dead times:
+// its threshold in V and its slope in Ω.
 type BodyDiode struct{ Voltage, Resistance float64 }
 
 // Loss returns what a current i (A, ≥ 0) through the body diode loses in the

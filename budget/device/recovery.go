@@ -8,12 +8,12 @@ type Recovery struct {
 	Charge          float64 // C, stated, less the capacitive charge where it holds that
 	Current         float64 // A, at which it is stated
 	Slope           float64 // A/s, at which it is stated
-	CurrentExponent float64
-	SlopeExponent   float64
+	CurrentExponent float64 // exponent of the charge over the current
+	SlopeExponent   float64 // exponent of the charge over the slope
 	Tau             float64 // s, carrier lifetime; 0: not known
 	DeadTime        float64 // s, during which a body diode stores charge
 	DeadTimeBounds  bool    // true of a body diode
-	Softness        float64 // t_b/t_a
+	Softness        float64 // ratio t_b/t_a
 }
 
 // Reverse is one recovery: charge in C, of which Tail flows while the rectifier

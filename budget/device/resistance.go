@@ -9,7 +9,7 @@ type Resistance struct {
 	curve    Bounded
 }
 
-// Bounded is a curve that knows its largest value.
+// Bounded is a curve that knows its largest value, in the units of its rows.
 type Bounded interface {
 	Curve
 	Most() float64

@@ -34,7 +34,7 @@ func newCore(sine float64, s Steinmetz) Core {
 	return Core{sine * SineShare(s.Alpha) * math.Pow(2, -s.Beta), s.Alpha, s.Beta, s.CT0, s.CT1, s.CT2}
 }
 
-// SineShare returns k_i/k times 2^β, the constant that makes the integral of
+// SineShare returns k_i/k times 2^β, the factor that makes the integral of
 // |dB/dt|^α over a sine give back Steinmetz's equation:
 //
 //	k_i = k/((2π)^(α−1)·2^(β−α)·c),   c = ∫|cos θ|^α dθ over a turn = 2·√π·Γ((α + 1)/2)/Γ(α/2 + 1)

@@ -4,7 +4,8 @@
 package magnetic
 
 // Curve is a quantity over another, as a data sheet draws it. outside is true
-// where x lies beyond the rows and the end value was held.
+// where x lies beyond the rows and the end value was held; x and y are in the
+// units of the rows.
 type Curve interface {
 	At(x float64) (y float64, outside bool)
 }
@@ -12,7 +13,7 @@ type Curve interface {
 // Area is a curve that can be integrated from 0.
 type Area interface {
 	Curve
-	Integral(x float64) float64 // from 0 to x
+	Integral(x float64) float64 // from 0 to x, in the units of y times x
 }
 
 // copperSlope is the temperature coefficient of annealed copper at 20 °C, 1/K.
