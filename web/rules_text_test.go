@@ -77,7 +77,7 @@ var raw = regexp.MustCompile(`\btempl\.Raw\b|\btemplate\.(HTML|JS|CSS|URL)\(|\b(
 
 func escaped(r *repository) (v verdict) {
 	r.texts(func(f file) {
-		if !slices.Contains([]string{".go", ".templ", ".js"}, path.Ext(f.path)) {
+		if f.test() || !slices.Contains([]string{".go", ".templ", ".js"}, path.Ext(f.path)) {
 			return
 		}
 		v.checked++
