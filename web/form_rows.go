@@ -64,6 +64,7 @@ func (b form) list(p budget.Part) *view.Rows {
 			l.Heads = append(l.Heads, heading(f.Name, f.Unit))
 		}
 	}
+	l.Width = strconv.Itoa(len(l.Heads) + 1)
 	for i := range b.draft.shownRows(p.Path) {
 		l.Rows = append(l.Rows, b.listRow(p, i))
 	}

@@ -1,9 +1,6 @@
 package view
 
-import (
-	"strconv"
-	"strings"
-)
+import "strings"
 
 // Field is one entry of a form.
 type Field struct {
@@ -140,13 +137,11 @@ type Rows struct {
 	Send  string // where its buttons send the form
 	Of    string // path of the list
 	Heads []string
+	Width string // how many columns that makes, the one of its buttons included
 	Rows  []Row
 	Add   string // what its button says to the server
 	Word  string // on the button
 }
-
-// Width is how many columns the table has, the one of its buttons included.
-func (r Rows) Width() string { return strconv.Itoa(len(r.Heads) + 1) }
 
 // Row is one row of such a list: what it is called on a line of its own, which
 // wants room, and the rest below.
