@@ -114,10 +114,6 @@ func (b *Budget) unsettled(d *desk) {
 		return
 	}
 	b.State, b.reason = Runaway, reasonNoBalance
-	if part := d.last.impossible(); part != noHeat {
-		b.reason, b.Part = reasonImpossible, partNames[part]
-		return
-	}
 	b.Part = partNames[s.m.greatestGain(&d.last, s)]
 }
 
