@@ -123,6 +123,9 @@ func peakCurrent(d Drive, b Branches, l Linkage, il float64) float64 {
 			low = peak
 		}
 		next := peak * math.Exp(math.Log(il/mean)*mean/(slope*peak))
+		if next == peak { // nothing is left, though peak has just become an end of the bracket
+			return peak
+		}
 		if !(next > low && next < high) {
 			next = between(low, high)
 		}
