@@ -2,6 +2,7 @@ package budget
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"strings"
 )
@@ -81,6 +82,8 @@ func (v *verdict) format() {
 // part judges the fields of one part, each by itself.
 func (v *verdict) part(p Part) {
 	switch {
+	case p.List && len(v.design.Series) > MaxRows:
+		v.wrong(p.Path, "must have %d rows at most", MaxRows)
 	case p.List:
 		for i := range v.design.Series {
 			v.fields(p, fmt.Sprintf("%s[%d].", p.Path, i))
@@ -200,6 +203,8 @@ func (v *verdict) curve(f Field, path string, rows Curve) {
 		switch {
 		case !finite(row[0]):
 			v.wrong(x, "must be an ordinary number")
+		case math.Abs(row[0]) > Largest:
+			v.wrong(x, "is larger than any converter holds; must be below %g", Largest)
 		case f.XUnit == "Hz" && row[0] <= 0:
 			v.wrong(x, "must be above 0 Hz")
 		case f.XUnit == "A" && row[0] < 0:
