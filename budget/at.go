@@ -144,25 +144,38 @@ var partNames = [3]string{"switch", "rectifier", "inductor"}
 // gains returns (theta_ja + enclosure_theta)·dP/dT of the parts with the currents
 // held: 1 is where a part heats itself as fast as it can shed heat.
 func (m *Model) gains(s *situation) [3]float64 {
-	const h = 1e-3 // K
 	var gains [3]float64
 	for part := range gains {
-		var heat [2]float64
-		for side, sign := range [2]float64{-1, 1} {
-			probe := *s
-			t := s.temperature
-			t[part] += sign * h
-			if probe.warm(t) != sound || probe.account() != sound {
-				gains[part] = math.Inf(1)
-				break
-			}
-			heat[side] = probe.heat[part]
-		}
-		if !math.IsInf(gains[part], 1) {
-			gains[part] = (m.theta[part] + m.enclosure) * (heat[1] - heat[0]) / (2 * h)
-		}
+		gains[part] = (m.theta[part] + m.enclosure) * s.heatSlope(part)
 	}
 	return gains
+}
+
+// heatSlope returns dP/dT of a part in W/K by a central difference; where a model
+// ends within a thousandth of a kelvin by a difference to the other side, and
+// infinity where it ends on both.
+func (s *situation) heatSlope(part int) float64 {
+	const h = 1e-3 // K
+	low, below := s.heatBeside(part, -h)
+	high, above := s.heatBeside(part, h)
+	switch {
+	case below && above:
+		return (high - low) / (2 * h)
+	case above:
+		return (high - s.heat[part]) / h
+	case below:
+		return (s.heat[part] - low) / h
+	}
+	return math.Inf(1)
+}
+
+// heatBeside returns what a part would lose a few kelvin beside its temperature.
+func (s *situation) heatBeside(part int, kelvin float64) (watts float64, known bool) {
+	probe := *s
+	t := s.temperature
+	t[part] += kelvin
+	known = probe.warm(t) == sound && probe.account() == sound
+	return probe.heat[part], known
 }
 
 // greatestGain names the part that runs away: that with the greatest gain at the
