@@ -119,19 +119,19 @@ func (z sizer) voltSeconds(vin float64) float64 {
 	return f.On * f.Off / (f.On + f.Off) * f.Period
 }
 
-// flow returns the lossless current at full load.
-func (z sizer) flow(vin, inductance float64) stage.Flow {
+// flow returns the lossless current at full load, and whether it rests.
+func (z sizer) flow(vin, inductance float64) (flow stage.Flow, resting bool) {
 	law := magnetic.NewLinkage(inductance, 0, 0, nil)
-	flow, _ := stage.Continuous(z.flux(vin), stage.Branches{}, law, z.meanAt(vin))
-	if flow.Min < 0 && !z.forced {
+	flow, _ = stage.Continuous(z.flux(vin), stage.Branches{}, law, z.meanAt(vin))
+	if resting = flow.Min < 0 && !z.forced; resting {
 		flow, _ = stage.Discontinuous(z.flux(vin), stage.Branches{}, law, z.meanAt(vin))
 	}
-	return flow
+	return flow, resting
 }
 
 // raise takes one input voltage into the worst of each part.
 func (z sizer) raise(parts []Requirement, vin, inductance float64) {
-	flow := z.flow(vin, inductance)
+	flow, resting := z.flow(vin, inductance)
 	blocking := z.topology.Blocking(vin, z.vout)
 	branch := map[stage.Branch]wave.Share{stage.Inductor: flow.Whole(), stage.Switch: flow.Rise(), stage.Rectifier: flow.Fall()}
 	worst := func(r *Requirement, volt, peak, mean, square float64) {
@@ -151,6 +151,10 @@ func (z sizer) raise(parts []Requirement, vin, inductance float64) {
 		of   stage.Branch
 	}{{vin, z.topology.InputSees}, {z.vout, z.topology.OutputSees}} {
 		share := branch[c.of]
-		worst(&parts[3+i], c.volt, math.Max(flow.Max-share.Mean(), share.Mean()), 0, share.RippleSquare())
+		lowest := 0.0 // what it filters pauses once a period, but for the continuous inductor's
+		if c.of == stage.Inductor && !resting {
+			lowest = flow.Min
+		}
+		worst(&parts[3+i], c.volt, math.Max(flow.Max-share.Mean(), share.Mean()-lowest), 0, share.RippleSquare())
 	}
 }
