@@ -4,7 +4,8 @@ import "math"
 
 // Core is a core's loss by the improved generalised Steinmetz equation.
 type Core struct {
-	coefficient   float64 // V·k_i·f^α·(1/unit)^β, so that the loss is this times swing^β
+	known         bool
+	log           float64 // ln of V·k_i·f^α·(1/unit)^β, so that the loss is this times swing^β; its powers alone may overflow
 	alpha, beta   float64
 	ct0, ct1, ct2 float64
 }
@@ -17,21 +18,22 @@ type Steinmetz struct{ Alpha, Beta, CT0, CT1, CT2 float64 }
 // turns, of a material with the loss k·f^α·B^β in W/m³, f in Hz, B the amplitude in
 // T, at the switching frequency f.
 func MaterialCore(volume, area, turns, k float64, s Steinmetz, f float64) Core {
-	return newCore(volume*k*math.Pow(f, s.Alpha)*math.Pow(1/(turns*area), s.Beta), s)
+	return newCore(volume*k, f, turns*area, s)
 }
 
 // CatalogueCore returns the core of an inductor whose loss power (W) is given for
 // a sine of the frequency fRef (Hz) and the peak-to-peak ripple (A): the current
 // stands for the flux, Δi = Δλ/inductance, and k = P_ref/(f_ref^α·(ripple/2)^β).
 func CatalogueCore(power, fRef, ripple, inductance float64, s Steinmetz, f float64) Core {
-	scale := math.Pow(f/fRef, s.Alpha) * math.Pow(2/ripple/inductance, s.Beta)
-	return newCore(power*scale, s)
+	return newCore(power, f/fRef, ripple/2*inductance, s)
 }
 
-// newCore takes the loss of a sine of unit linkage amplitude and turns it into the
-// coefficient of a peak-to-peak swing under straight segments.
-func newCore(sine float64, s Steinmetz) Core {
-	return Core{sine * SineShare(s.Alpha) * math.Pow(2, -s.Beta), s.Alpha, s.Beta, s.CT0, s.CT1, s.CT2}
+// newCore takes the loss scale·frequency^α·(amplitude/unit)^β of a sine, the amplitude
+// that of the linkage in V·s, and turns it into the loss of a peak-to-peak swing under
+// straight segments.
+func newCore(scale, frequency, unit float64, s Steinmetz) Core {
+	log := math.Log(scale) + s.Alpha*math.Log(frequency) - s.Beta*math.Log(2*unit) + math.Log(SineShare(s.Alpha))
+	return Core{scale > 0, log, s.Alpha, s.Beta, s.CT0, s.CT1, s.CT2}
 }
 
 // SineShare returns k_i/k times 2^β, the factor that makes the integral of
@@ -54,11 +56,11 @@ func SineShare(alpha float64) float64 {
 //
 // the two segments of iGSE, a resting flux adding nothing. No swing, no loss.
 func (c Core) Loss(swing, d1, d2, factor float64) float64 {
-	if swing == 0 || c.coefficient == 0 {
+	if swing == 0 || !c.known {
 		return 0
 	}
-	segments := math.Pow(d1, 1-c.alpha) + math.Pow(d2, 1-c.alpha)
-	return c.coefficient * math.Pow(swing, c.beta) * segments * factor
+	even := c.log + c.beta*math.Log(swing)
+	return (math.Exp(even+(1-c.alpha)*math.Log(d1)) + math.Exp(even+(1-c.alpha)*math.Log(d2))) * factor
 }
 
 // Factor returns ct0 − ct1·T + ct2·T² at t (°C). Far from where it was fitted it
@@ -66,4 +68,4 @@ func (c Core) Loss(swing, d1, d2, factor float64) float64 {
 func (c Core) Factor(t float64) float64 { return c.ct0 - c.ct1*t + c.ct2*t*t }
 
 // Known reports whether the core has a loss at all.
-func (c Core) Known() bool { return c.coefficient != 0 }
+func (c Core) Known() bool { return c.known }
