@@ -94,6 +94,12 @@ func Discontinuous(d Drive, b Branches, l Linkage, il float64) (Flow, Fault) {
 	peak := peakCurrent(d, b, l, il)
 	linkage := l.At(peak)
 	t1, t2 := intervals(d, b, linkage, peak)
+	if !(t1 >= 0) {
+		return Flow{}, NoOnVoltage
+	}
+	if !(t2 >= 0) { // a resistance below zero, that of an iterate gone astray
+		return Flow{}, NoOffVoltage
+	}
 	d1, d2 := t1/d.Period, t2/d.Period
 	return Flow{wave.Triangle{Max: peak, D1: d1, D2: d2}, linkage, t1}, NoFault
 }
