@@ -185,6 +185,9 @@ func junction(m *Model, b *Budget, s *situation) (list []observation) {
 
 func thermalGain(m *Model, b *Budget, s *situation) (list []observation) {
 	for part, g := range m.gains(s) {
+		if !finite(g) {
+			continue // the models end here on both sides: there is no slope to speak of
+		}
 		list = gauge{part: partNames[part], rule: "thermal_gain", value: g, caution: 0.5, limit: 1, source: runaways,
 			message: fmt.Sprintf("a kelvin of heating brings %.2g kelvin more; at 1 the part runs away: lower its thermal resistance or its temperature-dependent loss", g)}.read(list)
 	}

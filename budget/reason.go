@@ -17,6 +17,7 @@ const (
 	reasonHot
 	reasonNoBalance
 	reasonCold
+	reasonOverflow
 )
 
 var reasonOf = map[fault]reason{
@@ -27,7 +28,7 @@ var reasonOf = map[fault]reason{
 	plateauAtDrive: reasonPlateau,
 	currentReverse: reasonReverse,
 	tooCold:        reasonCold,
-	overflow:       reasonNoBalance,
+	overflow:       reasonOverflow,
 }
 
 // Reason says in words why the point has no budget; "" when it settled.
@@ -51,6 +52,8 @@ func (b *Budget) Reason() string {
 		return fmt.Sprintf("the %s settles only above %.0f °C", b.Part, hottest)
 	case reasonCold:
 		return fmt.Sprintf("at %.4g °C the resistance of copper is outside its model", b.Ambient)
+	case reasonOverflow:
+		return "even with the parts held at ambient the losses grow faster than the input can feed them; a lighter load, less resistance or less leakage would settle"
 	case reasonNoBalance:
 		return fmt.Sprintf("the %s heats itself faster than it can shed heat; a lower thermal resistance, a cooler ambient or a part with less loss would settle", b.Part)
 	}

@@ -16,6 +16,7 @@ type situation struct {
 	frame frame
 	mode  Mode
 
+	guess       float64    // W, the stage loss it is worked out for
 	temperature [3]float64 // °C of switch, rectifier, inductor
 	is, il      float64    // A, stage input and mean inductor current
 
@@ -59,6 +60,7 @@ const (
 const (
 	absoluteZero = -273.15 // °C
 	beyondAll    = 1e5     // °C, where every model has long lost its meaning
+	mostLoss     = 1e30    // W, above which no iterate is worth following; its square is still a number
 )
 
 var stageFaults = [...]fault{sound, noOnVoltage, noOffVoltage, swingTooLarge, currentReverse}
@@ -85,6 +87,9 @@ func (s *situation) warm(temperature [3]float64) fault {
 			return overflow
 		}
 	}
+	if s.rds > Largest || s.rdsRectifier > Largest { // a steep power law near absolute zero
+		return overflow
+	}
 	if s.rdcr = m.dcr * magnetic.CopperFactor(temperature[inductorHeat]); s.rdcr <= 0 {
 		return tooCold // the straight line of copper's resistance has met zero
 	}
@@ -95,6 +100,7 @@ func (s *situation) warm(temperature [3]float64) fault {
 // carry finds the currents for a stage loss in W.
 func (s *situation) carry(stageLoss float64) fault {
 	m, f := s.m, &s.frame
+	s.guess = stageLoss
 	s.is = (m.vout*f.io + stageLoss) / f.Vin
 	s.il = m.topology.MeanCurrent(s.is, f.io)
 	branches := stage.Branches{
@@ -163,7 +169,7 @@ func (s *situation) account() fault {
 			s.stage += p
 		}
 	}
-	if math.IsInf(s.loss, 0) {
+	if math.Abs(s.loss) > mostLoss {
 		return overflow
 	}
 	if math.IsNaN(s.loss) {

@@ -77,7 +77,8 @@ func (p *problem) at(x unknowns) (unknowns, fault) {
 func (p *problem) error(step unknowns) float64 {
 	worst := 0.0
 	if step[0] != 0 {
-		worst = math.Abs(step[0]) / math.Max(p.s.loss, math.SmallestNonzeroFloat64)
+		answer := p.s.guess + p.s.loss - p.s.stage // not what followed from the guess: far off, that is far larger
+		worst = math.Abs(step[0]) / math.Max(answer, math.SmallestNonzeroFloat64)
 	}
 	if p.held {
 		return worst
@@ -214,7 +215,7 @@ func (p *problem) advance(x, r unknowns, slope matrix, pace float64) (unknowns, 
 		if wrong == sound && (after.norm() <= 2*r.norm() || pace < 1e-3) {
 			return x.plus(step), after, nextPace(pace, r, after), sound
 		}
-		if pace /= 4; pace < smallestFactor {
+		if pace /= 4; !(pace >= smallestFactor) {
 			if wrong == sound {
 				return x.plus(step), after, 1, sound
 			}
