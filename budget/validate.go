@@ -147,6 +147,9 @@ func (v *verdict) fields(p Part, prefix string) {
 // holds, and small enough that no product of several runs out of numbers.
 const Largest = 1e15
 
+// Smallest is the smallest magnitude of a number that isn't 0, for the same reason.
+const Smallest = 1e-30
+
 func (v *verdict) number(f Field, path string, n Num) {
 	switch {
 	case !n.Stated && f.Required:
@@ -162,6 +165,8 @@ func (v *verdict) number(f Field, path string, n Num) {
 		v.wrong(path, "must be 0%s or more", unitAfter(f.Unit))
 	case f.Domain == NotPositive && n.V > 0:
 		v.wrong(path, "must be 0%s or below", unitAfter(f.Unit))
+	case n.V != 0 && math.Abs(n.V) < Smallest:
+		v.wrong(path, "is smaller than any converter holds; must be %g or more", Smallest)
 	case f.Below != 0 && n.V > f.Below:
 		v.wrong(path, "must be %g at most", f.Below)
 	}
@@ -212,7 +217,7 @@ func (v *verdict) curve(f Field, path string, rows Curve) {
 		case i > 0 && !(row[0] > rows[i-1][0]):
 			v.wrong(x, "must be above the row before it: %s has to increase", f.XName)
 		}
-		if !finite(row[1]) || row[1] <= 0 || row[1] > Largest {
+		if !finite(row[1]) || row[1] < Smallest || row[1] > Largest {
 			v.wrong(y, "must be above 0%s", unitAfter(f.Unit))
 		}
 	}
@@ -224,7 +229,7 @@ func ValidatePoints(points []Point) []FieldError {
 	v := &verdict{}
 	for i, p := range points {
 		at := func(name string) string { return fmt.Sprintf("points[%d].%s", i, name) }
-		if !finite(p.Vin) || p.Vin <= 0 || p.Vin > Largest {
+		if !finite(p.Vin) || p.Vin < Smallest || p.Vin > Largest {
 			v.wrong(at("vin"), "must be above 0 V")
 		}
 		if !finite(p.Iout) || p.Iout < 0 || p.Iout > Largest {
