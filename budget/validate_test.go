@@ -220,7 +220,7 @@ func TestNotFinite(t *testing.T) {
 			if f.Kind != Number || path == "inductor.winding.thickness" || strings.Contains(path, "core.reference") {
 				continue // these last stand in no full design
 			}
-			for _, v := range []float64{math.NaN(), math.Inf(1), math.Inf(-1), math.Nextafter(1e15, 2e15), -1.1e15} {
+			for _, v := range []float64{math.NaN(), math.Inf(1), math.Inf(-1), math.Nextafter(1e15, 2e15), -1.1e15, math.Nextafter(1e-30, 0)} {
 				tried++
 				if errors := at(verdictOn(ofDiode(path), set(path, v)), path); len(errors) == 0 || errors[0].Missing {
 					t.Errorf("%s = %g: %v", path, v, errors)
