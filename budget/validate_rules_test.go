@@ -180,7 +180,7 @@ func TestValidatePoints(t *testing.T) {
 	good := Point{12, 0, -273.15}
 	nan, inf := math.NaN(), math.Inf(1)
 	errors := ValidatePoints([]Point{good, {0, 1, 25}, {12, -1e-300, 25}, {12, 1, math.Nextafter(-273.15, -300)},
-		{nan, nan, nan}, {inf, inf, inf}, {-inf, -inf, -inf}, {math.SmallestNonzeroFloat64, 0, 25}, {-1, -1, -300}})
+		{nan, nan, nan}, {inf, inf, inf}, {-inf, -inf, -inf}, {1e-30, 0, 25}, {-1, -1, -300}})
 	judge(t, "points", errors, strings.Join([]string{"points[1].vin", "points[2].iout", "points[3].ambient",
 		"points[4].vin", "points[4].iout", "points[4].ambient", "points[5].vin", "points[5].iout", "points[5].ambient",
 		"points[6].vin", "points[6].iout", "points[6].ambient", "points[8].vin", "points[8].iout", "points[8].ambient"}, " "))
