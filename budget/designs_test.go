@@ -1,6 +1,9 @@
 package budget
 
-import "testing"
+import (
+	"math"
+	"testing"
+)
 
 // full is a synchronous buck of 48 to 12 V with every part and entry there, at ease
 // in all its ratings: it draws no finding.
@@ -76,4 +79,25 @@ func item(t testing.TB, b *Budget, part, kind string) float64 {
 	}
 	t.Fatalf("no item %s.%s", part, kind)
 	return 0
+}
+
+// TestGrid reads the default points: lowest, nominal, highest input, each over the loads.
+func TestGrid(t *testing.T) {
+	points, i := Grid(lean()), 0
+	for _, vin := range []float64{40, 48, 56} {
+		for _, load := range []float64{0.4, 0.8, 1.6, 2, 2.4, 4, 6, 8} {
+			if i < len(points) && (points[i].Vin != vin || math.Abs(points[i].Iout-load) > 1e-12 || points[i].Ambient != 25) {
+				t.Errorf("point %d is %v, want %g V and %g A at 25 °C", i, points[i], vin, load)
+			}
+			i++
+		}
+	}
+	if len(points) != i {
+		t.Errorf("%d points, want %d", len(points), i)
+	}
+	d := lean()
+	d.Ambient = N(0)
+	if got := Grid(d)[0].Ambient; got != 0 {
+		t.Errorf("a stated ambient of 0 °C became %g", got)
+	}
 }

@@ -195,16 +195,19 @@ func TestUnsettled(t *testing.T) {
 // TestReviewWorst asks for the worst point of a rule, by level and then by value.
 func TestReviewWorst(t *testing.T) {
 	d := quiet()
-	d.Switch.IdRating = N(5)
-	points := []Point{{48, 7, 25}, {48, 11, 25}, {48, 9, 25}, {48, 1, 25}}
-	list := review(t, d, "current_rating", points...)
-	if len(list) != 1 || *list[0].At != points[1] || list[0].Level != Exceeded {
-		t.Errorf("%+v, want the second point", list)
+	d.Switch.IdRating = N(4) // 7 A of load are a caution, 9 and 11 A beyond
+	points := []Point{{48, 7, 25}, {48, 9, 25}, {48, 11, 25}, {48, 1, 25}}
+	for range points {
+		list := review(t, d, "current_rating", points...)
+		if len(list) != 1 || *list[0].At != (Point{48, 11, 25}) || list[0].Level != Exceeded {
+			t.Errorf("%+v of %v, want the one at 11 A", list, points)
+		}
+		points = append(points[1:], points[0])
 	}
 	d.Switch.TjMax = N(20)
 	m, _ := Prepare(d)
 	var b Budget
-	m.At(points[1], &b)
+	m.At(Point{48, 11, 25}, &b)
 	b2 := b
 	all := m.Review([]Budget{b, b2})
 	if !slices.IsSortedFunc(all, func(a, b Finding) int { return rank(a.Level) - rank(b.Level) }) || len(all) < 2 {
