@@ -260,7 +260,8 @@ func TestCannotRest(t *testing.T) {
 	if proved*3 < could {
 		t.Errorf("of %d that can't rest only %d are proved", could, proved)
 	}
-	if d := (stage.Drive{On: 10, Off: 5, Period: period}); stage.CannotRest(d, stage.Branches{}, coil(1e-6), 0) || stage.CannotRest(d, stage.Branches{}, soft(1e-9), 10) {
-		t.Error("proved without a current, or beyond the saturation law")
+	if d := (stage.Drive{On: 10, Off: 5, Period: period}); stage.CannotRest(d, stage.Branches{}, coil(1e-6), 0) || stage.CannotRest(d, stage.Branches{}, soft(1e-9), 10) ||
+		stage.CannotRest(stage.Drive{On: 0, Off: 5, Period: period}, stage.Branches{}, coil(1e-6), 10) {
+		t.Error("proved without a current, beyond the saturation law, or where nothing rises")
 	}
 }

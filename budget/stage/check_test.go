@@ -3,8 +3,6 @@ package stage_test
 import (
 	"math"
 	"testing"
-
-	"gonum.org/v1/gonum/integrate/quad"
 )
 
 // row is one line of a catalogue of figures: what the package gives, what a second
@@ -30,9 +28,4 @@ func hold(t *testing.T, rows []row) {
 			t.Errorf("%s: got %.12g, want %.12g by %s (off by %.2g)", r.name, r.got, r.want, r.source, off/math.Abs(r.want))
 		}
 	}
-}
-
-// integral integrates a smooth function from a to b.
-func integral(f func(float64) float64, a, b float64) float64 {
-	return quad.Fixed(f, a, b, 60, quad.Legendre{}, 0)
 }
