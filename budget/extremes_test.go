@@ -3,6 +3,7 @@ package budget
 import (
 	"encoding/json"
 	"math"
+	"strings"
 	"testing"
 	"time"
 )
@@ -133,6 +134,30 @@ func TestBeyondNumbers(t *testing.T) {
 			if decent(t, m, &b); t.Failed() {
 				t.Fatalf("%s at %g A", name, load)
 			}
+		}
+	}
+}
+
+// TestImpossible heats a part to where its model leaves its meaning: each is a runaway
+// of that part, with the reason.
+func TestImpossible(t *testing.T) {
+	for name, c := range map[string]struct {
+		part   string
+		change func(*Design)
+	}{
+		"threshold below zero": {"rectifier", all(diode, set("diode.v_f0", 0.05), set("ambient", 125))},
+		"slope below zero":     {"rectifier", all(diode, set("diode.r_d_slope", -0.02), set("ambient", 100))},
+		"core below zero":      {"inductor", all(set("inductor.core.ct1", 0.02), set("ambient", 90))},
+	} {
+		d := full()
+		c.change(d)
+		m, err := Prepare(d)
+		if err != nil {
+			t.Fatal(err)
+		}
+		var b Budget
+		if m.At(Point{48, 8, d.Ambient.V}, &b); b.State != Runaway || b.Part != c.part || !strings.Contains(b.Reason(), "below zero") {
+			t.Errorf("%s: %s of %q, %s", name, b.State, b.Part, b.Reason())
 		}
 	}
 }

@@ -265,3 +265,16 @@ func TestCannotRest(t *testing.T) {
 		t.Error("proved without a current, beyond the saturation law, or where nothing rises")
 	}
 }
+
+// TestCannotRestIsSharp puts the mean current beside where the modes meet, without
+// resistance: there the proof holds to the end.
+func TestCannotRestIsSharp(t *testing.T) {
+	const l = 10e-6
+	d, worst := stage.Drive{On: 7, Off: 2, Period: period}, stage.Branches{Threshold: 3}
+	meet := 7.0 * 5 / 12 * period / l / 2 // half the ripple
+	for share, want := range map[float64]bool{0.999: false, 1.001: true} {
+		if got := stage.CannotRest(d, worst, coil(l), share*meet); got != want {
+			t.Errorf("at %g of the boundary: proved %v, want %v", share, got, want)
+		}
+	}
+}
