@@ -77,7 +77,7 @@ func (p *problem) at(x unknowns) (unknowns, fault) {
 func (p *problem) error(step unknowns) float64 {
 	worst := 0.0
 	if step[0] != 0 {
-		answer := p.s.guess + p.s.loss - p.s.stage // not what followed from the guess: far off, that is far larger
+		answer := p.s.guess + (p.s.loss - p.s.stage) // not what followed from the guess: far off, that is far larger
 		worst = math.Abs(step[0]) / math.Max(answer, math.SmallestNonzeroFloat64)
 	}
 	if p.held {
