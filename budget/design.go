@@ -93,7 +93,7 @@ type Output struct {
 type MOSFET struct {
 	Part            string `json:"part,omitempty"`
 	VdsRating       Num    `json:"vds_rating,omitzero"`
-	IdRating        Num    `json:"id_rating,omitzero"`
+	IDRating        Num    `json:"id_rating,omitzero"`
 	TjMax           Num    `json:"tj_max,omitzero"`
 	ThetaJA         Num    `json:"theta_ja,omitzero"`
 	RdsOn           Num    `json:"rds_on,omitzero"`

@@ -27,7 +27,7 @@ func full() *Design {
 }
 
 func easyMOSFET() *MOSFET {
-	return &MOSFET{VdsRating: N(100), IdRating: N(40), TjMax: N(150), ThetaJA: N(3), RdsOn: N(6e-3), RdsOnHotRatio: N(1.8),
+	return &MOSFET{VdsRating: N(100), IDRating: N(40), TjMax: N(150), ThetaJA: N(3), RdsOn: N(6e-3), RdsOnHotRatio: N(1.8),
 		VThreshold: N(2), VPlateau: N(3.2), VPlateauCurrent: N(10), QGS2: N(2e-9), QGD: N(4e-9), QG: N(20e-9), RGate: N(1), LSource: N(2e-10),
 		QOSS: N(30e-9), EOSS: N(0.5e-6), QOSSAt: N(50), VSD: N(0.8), RSD: N(5e-3),
 		Recovery: Recovery{QRR: N(20e-9), QRRCurrent: N(8), QRRDidt: N(1e9), QRRTau: N(20e-9), Softness: N(0.5)}}

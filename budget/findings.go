@@ -156,10 +156,10 @@ func blockingVoltage(m *Model, b *Budget, s *situation) (list []observation) {
 
 func currentRating(m *Model, b *Budget, s *situation) (list []observation) {
 	g := gauge{part: "switch", rule: "current_rating", caution: 0.8, source: practice}
-	list = share(list, g, b.SwitchRMS, m.design.Switch.IdRating.V, "the rms current", "A", "a larger part, or two in parallel, would carry it with room")
+	list = share(list, g, b.SwitchRMS, m.design.Switch.IDRating.V, "the rms current", "A", "a larger part, or two in parallel, would carry it with room")
 	g.part = "rectifier"
 	if m.sync {
-		return share(list, g, b.RectifierRMS, m.design.SyncSwitch.IdRating.V, "the rms current", "A", "a larger part, or two in parallel, would carry it with room")
+		return share(list, g, b.RectifierRMS, m.design.SyncSwitch.IDRating.V, "the rms current", "A", "a larger part, or two in parallel, would carry it with room")
 	}
 	return share(list, g, b.RectifierMean, m.design.Diode.IFRating.V, "the mean current", "A", "a larger diode would carry it with room")
 }
@@ -229,10 +229,10 @@ func capacitorLimits(m *Model, b *Budget, s *situation) (list []observation) {
 }
 
 func modulation(m *Model, b *Budget, s *situation) (list []observation) {
+	limits := orZero(m.design.Controller)
 	if m.design.Controller == nil {
-		return nil
+		limits.DutyMax.V = fieldIndex["controller.duty_max"].Default
 	}
-	limits := m.design.Controller
 	if limits.DutyMax.V > 0 {
 		list = gauge{part: "controller", rule: "modulation", aspect: "duty", value: b.Duty / limits.DutyMax.V, caution: 0.9, limit: 1, source: controller,
 			message: fmt.Sprintf("the duty is %.3g of %.3g possible; the output sags where it is reached", b.Duty, limits.DutyMax.V)}.read(list)

@@ -96,15 +96,19 @@ func (m *Model) nominal(share float64) Point {
 	return Point{Vin: m.design.Input.Nominal.V, Iout: share * m.design.Output.Current.V, Ambient: m.design.Ambient.V}
 }
 
+// least is the share of full load below which discontinuous conduction is not worth a
+// word, and the width to which its boundary is found.
+const least = 0.002
+
 // discontinuous finds the load below which the current is discontinuous at the
 // nominal input, by halving: to 0.2 % of full load.
 func (m *Model) discontinuous() []observation {
-	if m.forced || !m.discontinuousAt(LoadGrid()[0]) {
+	if m.forced || !m.discontinuousAt(least) {
 		return nil
 	}
 	message, low, high := "the current is discontinuous up to full load at the nominal input", 0.0, 1.0
 	if !m.discontinuousAt(1) {
-		for high-low > 0.002 {
+		for high-low > least {
 			if mid := (low + high) / 2; m.discontinuousAt(mid) {
 				low = mid
 			} else {

@@ -195,7 +195,7 @@ func TestUnsettled(t *testing.T) {
 // TestReviewWorst asks for the worst point of a rule, by level and then by value.
 func TestReviewWorst(t *testing.T) {
 	d := quiet()
-	d.Switch.IdRating = N(4) // 7 A of load are a caution, 9 and 11 A beyond
+	d.Switch.IDRating = N(4) // 7 A of load are a caution, 9 and 11 A beyond
 	points := []Point{{48, 7, 25}, {48, 9, 25}, {48, 11, 25}, {48, 1, 25}}
 	for range points {
 		list := review(t, d, "current_rating", points...)
