@@ -92,8 +92,17 @@ var (
 	pointGroups   = regexp.MustCompile(`^[+-]? ?[1-9][0-9]{0,2}(?:\.[0-9]{3})+,[0-9]+(?:[^0-9.,].*)?$`)
 )
 
-// refuseComma refuses every comma, since it is a decimal mark to some and
-// parts thousands to others, and says how the number is written here.
+// clearComma reads a comma that can only be a decimal mark as a point: "0,5",
+// "7,25 nC". One before a group of three digits may part thousands.
+func clearComma(text string) string {
+	if decimalComma.MatchString(text) && !eitherComma.MatchString(text) {
+		return strings.Replace(text, ",", ".", 1)
+	}
+	return text
+}
+
+// refuseComma refuses a comma that is a decimal mark to some and parts
+// thousands to others, and says how the number is written here.
 func (s spec) refuseComma(text string) *Error {
 	point := strings.Replace(text, ",", ".", 1)
 	joined := strings.ReplaceAll(text, ",", "")
@@ -102,8 +111,6 @@ func (s spec) refuseComma(text string) *Error {
 		return ambiguous(text, point, joined)
 	case thousandComma.MatchString(text):
 		return without(text, ",", "commas")
-	case decimalComma.MatchString(text):
-		return instead(point, "The decimal mark here is a point. Enter %s.", point)
 	case pointGroups.MatchString(text):
 		reading := strings.Replace(strings.ReplaceAll(text, ".", ""), ",", ".", 1)
 		return instead(reading, "The decimal mark here is a point, and thousands are not parted. Enter %s.", reading)
@@ -137,14 +144,14 @@ func (s spec) refuseCode(n number, letter rune, fraction string) *Error {
 // refuseSuffix explains what is wrong with the text behind a number.
 func (s spec) refuseSuffix(n number, suffix string) *Error {
 	typed := n.text + " " + suffix
+	if other, ok := foreign(suffix); ok && other != s.unit {
+		return refuse("%q is in %s. Enter %s.", typed, other, s.wanted())
+	}
 	if found := s.otherCase(suffix); len(found) > 0 {
 		for i := range found {
 			found[i] = n.text + " " + found[i]
 		}
 		return ambiguousCase(typed, found)
-	}
-	if other, ok := foreign(suffix); ok && other != s.unit {
-		return refuse("%q is in %s. Enter %s.", typed, other, s.wanted())
 	}
 	if s.doublePrefix(suffix) {
 		return s.twoPrefixes(typed)

@@ -16,7 +16,8 @@ const maxLength = 64
 //
 // It takes an SI prefix with or without the unit ("22u", "22 µH"), the unit in
 // symbols or words, decimal exponents, digits in groups of three set apart by
-// spaces, and for Ω, F and H a letter in place of the decimal point ("4k7").
+// spaces, a decimal comma that can be nothing else ("0,5"), and in most units a
+// prefix in place of the decimal point ("4k7", "3n3").
 // Letter case counts: "1M" is mega, "1m" is milli. What could be read in two
 // ways is refused with both readings. The error is always an *Error; zero is
 // always positive.
@@ -25,7 +26,7 @@ func Parse(text string, u Unit) (float64, error) {
 	if utf8.RuneCountInString(text) > maxLength {
 		return 0, s.tooLong()
 	}
-	text = normalise(text)
+	text = clearComma(normalise(text))
 	if err := s.refuseForm(text); err != nil {
 		return 0, err
 	}

@@ -34,11 +34,7 @@ var rejected = []refused{
 	// Commas.
 	{"1,234", "V", `"1,234" can be read as 1.234 or 1234. Enter the one you mean.`, []string{"1.234", "1234"}},
 	{"-12,345 mV", "V", "can be read as", []string{"-12.345 mV", "-12345 mV"}},
-	{"3,3", "V", "The decimal mark here is a point. Enter 3.3.", []string{"3.3"}},
-	{"3,3k", "Ω", "Enter 3.3k.", []string{"3.3k"}},
-	{",5", "V", "decimal mark", []string{".5"}},
-	{"0,123", "V", "decimal mark", []string{"0.123"}},
-	{"1234,567", "V", "decimal mark", []string{"1234.567"}},
+	{"8 F", "Ω", `"8 F" is in F.`, nil},
 	{"1,234,567", "V", "parted by commas", []string{"1234567"}},
 	{"1,234.5", "V", "parted by commas", []string{"1234.5"}},
 	{"1.234,5", "V", "thousands are not parted", []string{"1234.5"}},

@@ -63,19 +63,19 @@ const (
 
 // specs holds every unit, in the order in which a foreign unit is recognised.
 //
-// The letter codes for Ω and F follow IEC 60062 (from memory); the same for H
-// and "3V3" are common practice on schematics.
+// The letter codes for Ω and F follow IEC 60062 (from memory); the same for other
+// units and "3V3" are common practice on schematics.
 var specs = []spec{
 	si("V", common, "12 or 3.3", "volt", "volts").coded("V"),
-	si("A", common, "10 or 250m", "amp", "amps", "ampere", "amperes"),
+	si("A", common, "10 or 250m", "amp", "amps", "ampere", "amperes").coded("µmk"),
 	si("Ω", common+"T", "11m or 4k7", "ohm", "ohms").also(symbol("R")).coded("RµmkMGT"),
 	si("F", common, "100n or 22u", "farad", "farads").coded("Ffpnµm"),
 	si("H", common, "22u or 4u7", "henry", "henrys", "henries").coded("fpnµm"),
-	si("C", common, "15n", "coulomb", "coulombs"),
-	si("s", common, "50n or 2u", "sec", "second", "seconds"),
-	si("Hz", common+"T", "250k or 1.2M", "hertz"),
-	si("W", common, "150m or 2.5", "watt", "watts"),
-	si("J", common, "1.5u", "joule", "joules"),
+	si("C", common, "15n", "coulomb", "coulombs").coded("nµm"),
+	si("s", common, "50n or 2u", "sec", "second", "seconds").coded("nµm"),
+	si("Hz", common+"T", "250k or 1.2M", "hertz").coded("kMG"),
+	si("W", common, "150m or 2.5", "watt", "watts").coded("µmk"),
+	si("J", common, "1.5u", "joule", "joules").coded("nµm"),
 	si("T", "fpnµmk", "200m", "tesla", "teslas"),
 	si("m", "fpnµmk", "0.5 mm or 70 µm", "metre", "metres", "meter", "meters").
 		also(whole("cm", -2), whole("dm", -1)),
