@@ -63,7 +63,7 @@ func share(list []observation, g gauge, value, rating float64, what, unit, help 
 var pointRules = []func(m *Model, b *Budget, s *situation) []observation{
 	blockingVoltage, currentRating, junction, thermalGain, saturation, inductorHeatLimits,
 	capacitorLimits, modulation, driveHeadroom, recoverySlope, outsideCurve, supplyLow,
-	hazardVoltage, hotSurface,
+	hazardVoltage, hotSurface, implausible,
 }
 
 // Findings returns what is to be said of one point, worst first.
@@ -133,7 +133,7 @@ func worse(a, b observation) bool {
 	if c := cmp.Compare(rank(a.Level), rank(b.Level)); c != 0 {
 		return c < 0
 	}
-	return a.severity > b.severity
+	return a.severity >= b.severity // the last of equals: the highest input and load come last
 }
 
 // highest returns the highest input voltage to reckon with at a point.
@@ -329,3 +329,23 @@ func hotSurface(m *Model, b *Budget, s *situation) (list []observation) {
 	}
 	return list
 }
+
+// implausible says what no single rating does: that the whole can't be meant.
+func implausible(m *Model, b *Budget, s *situation) []observation {
+	if b.Iout == 0 || b.Loss <= b.Pout || b.Iout < plausibleShare*m.design.Output.Current.V {
+		return nil
+	}
+	var worst entry
+	most := 0.0
+	for _, e := range m.entries {
+		if p := e.power(s, nil); p > most {
+			worst, most = e, p
+		}
+	}
+	return []observation{{Finding{Level: Caution, Part: worst.part, Rule: "implausible", Value: b.Loss, Limit: b.Pout, Unit: "W", Source: practice,
+		Message: fmt.Sprintf("more is lost than delivered, most of it in %s: look for an entry with a wrong prefix or unit", words(worst.kind))}, "", b.Loss / b.Pout}}
+}
+
+// plausibleShare is the share of full load below which a converter may well lose more
+// than it delivers.
+const plausibleShare = 0.2

@@ -54,7 +54,9 @@ func TestNothingToSay(t *testing.T) {
 			t.Errorf("%s: %+v", name, list)
 		}
 	}
-	m, b := solved(t, full(), easy)
+	d := full()
+	d.Inductor.Winding = nil // displaced by its curve, which is worth a note
+	m, b := solved(t, d, easy)
 	if list := m.Review([]Budget{*b}); len(list) != 0 {
 		t.Errorf("review: %+v", list)
 	}

@@ -159,6 +159,8 @@ func (v *verdict) number(f Field, path string, n Num) {
 		v.wrong(path, "must be an ordinary number")
 	case n.V > Largest || n.V < -Largest:
 		v.wrong(path, "is larger than any converter holds; must be below %g", Largest)
+	case f.Path == "output.voltage" && n.V < 0:
+		v.wrong(path, "must be above 0 V: enter the magnitude, also of a negative rail")
 	case f.Domain == Positive && n.V <= 0:
 		v.wrong(path, "must be above 0%s", unitAfter(f.Unit))
 	case f.Domain == NotNegative && n.V < 0:
