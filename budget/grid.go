@@ -1,5 +1,14 @@
 package budget
 
+import "lossbook/budget/stage"
+
+// Inverting reports whether the stage gives a negative output, whose voltage is a
+// magnitude here.
+func (d *Design) Inverting() bool {
+	t, _ := stage.ByName(d.Topology)
+	return t.Inverting
+}
+
 // LoadGrid holds the shares of full load at which a budget is drawn up unless
 // points are named.
 func LoadGrid() []float64 { return []float64{0.05, 0.10, 0.20, 0.25, 0.30, 0.50, 0.75, 1} }

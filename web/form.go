@@ -149,6 +149,9 @@ func (b form) field(f budget.Field, path string) view.Field {
 	case budget.Number:
 		field.Numeric = true
 		field.Unit, field.Read, field.Assumed = unitBeside(f, text, b.now[path]), understood(f, text, b.now[path]), assumed(f)
+		if doubt := doubtful(f, text); doubt != "" && field.Error == "" {
+			field.Read = strings.TrimPrefix(field.Read+"; "+doubt, "; ")
+		}
 	case budget.Choice:
 		field.Value, field.Options, field.Source = "", choices(f, text), nil
 	case budget.Rows:

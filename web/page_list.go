@@ -106,7 +106,11 @@ func stageWords(d *budget.Design) string {
 		words += ", " + d.Rectifier
 	}
 	if d.Input.Nominal.Stated && d.Output.Voltage.Stated {
-		words += fmt.Sprintf(" · %s → %s", quantityOf(d.Input.Nominal.V, "V", 3), quantityOf(d.Output.Voltage.V, "V", 3))
+		out := quantityOf(d.Output.Voltage.V, "V", 3)
+		if d.Inverting() {
+			out = "−" + out
+		}
+		words += fmt.Sprintf(" · %s → %s", quantityOf(d.Input.Nominal.V, "V", 3), out)
 	}
 	if d.Output.Current.Stated {
 		words += ", " + quantityOf(d.Output.Current.V, "A", 3)

@@ -42,7 +42,7 @@ func TestListShowsSamples(t *testing.T) {
 	for id, want := range map[string][]string{
 		"design-1": {"buck, synchronous · 48 V → 12 V, 8 A", "94.92"},
 		"design-2": {"boost, diode · 12 V → 24 V, 2 A", "95.41"},
-		"design-3": {"inverting buck-boost, diode · 24 V → 15 V, 1.5 A", "91.76"},
+		"design-3": {"inverting buck-boost, diode · 24 V → −15 V, 1.5 A", "91.76"},
 	} {
 		got := words(p.one(id))
 		for _, w := range append(want, "remove", "rename", "copy", "not yet") {

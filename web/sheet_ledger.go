@@ -203,9 +203,9 @@ func (p *picture) foot(unit watts) []view.LedgerLine {
 	}{
 		{"Loss, " + unit.unit, "sum", func(f *Figures) string { return unit.write(f.Loss) }},
 		{"Efficiency, %", "eta", func(f *Figures) string { return percent(f.Efficiency) }},
-		{"Switch, °C", "", func(f *Figures) string { return degrees(f.Temperatures.Switch) }},
-		{"Rectifier, °C", "", func(f *Figures) string { return degrees(f.Temperatures.Rectifier) }},
-		{"Inductor, °C", "", func(f *Figures) string { return degrees(f.Temperatures.Inductor) }},
+		{p.heated("Switch", "switch"), "", func(f *Figures) string { return degrees(f.Temperatures.Switch) }},
+		{p.heated("Rectifier", rectifierOf(p.design)), "", func(f *Figures) string { return degrees(f.Temperatures.Rectifier) }},
+		{p.heated("Inductor", "inductor"), "", func(f *Figures) string { return degrees(f.Temperatures.Inductor) }},
 	}
 	var lines []view.LedgerLine
 	for _, row := range rows {
@@ -220,6 +220,24 @@ func (p *picture) foot(unit watts) []view.LedgerLine {
 		lines = append(lines, l)
 	}
 	return lines
+}
+
+// heated heads a row of temperatures; without a thermal resistance they are no more
+// than the air's.
+func (p *picture) heated(name, part string) string {
+	if slot, ok := p.design.Slot(below(part, "theta_ja"), false); ok {
+		if n, ok := slot.(*budget.Num); ok && n.Stated {
+			return name + ", °C"
+		}
+	}
+	return name + ", °C, θ not stated"
+}
+
+func rectifierOf(d *budget.Design) string {
+	if d.Rectifier == "synchronous" {
+		return "sync_switch"
+	}
+	return "diode"
 }
 
 // limitOf is the temperature a part may reach, entered or assumed.

@@ -48,7 +48,7 @@ func (s *sheet) since(ctx context.Context) (view.Since, error) {
 	}
 	v.Keep = fmt.Sprintf("Keep as revision %d", s.kept.LatestRevision+1)
 	if len(s.wrong) > 0 {
-		v.Why = "To be kept, it needs " + plural(len(s.wrong), "more entry", "more entries") + " put right."
+		v.Why = "It can be kept once " + plural(len(s.wrong), "entry is", "entries are") + " made or put right."
 	} else if err := s.effect(ctx, &v); err != nil {
 		return v, err
 	}

@@ -5,8 +5,9 @@ package stage
 // Topology is one row of the table from which names, form, validation and API
 // description are read. All voltages are magnitudes in V, currents in A.
 type Topology struct {
-	Name  string // as the design file writes it
-	Title string // as a person reads it
+	Name      string // as the design file writes it
+	Title     string // as a person reads it
+	Inverting bool   // the output is negative; its voltage is a magnitude all the same
 
 	OnVoltage   func(vin, vout float64) float64 // on the inductor, switch conducting, without drops
 	OffVoltage  func(vin, vout float64) float64 // on the inductor, rectifier conducting, without drops
