@@ -199,9 +199,14 @@ func TestSizingOnTheSheet(t *testing.T) {
 // upload sends a file as the form of the list does.
 func (s *site) upload(field, content string) *httptest.ResponseRecorder {
 	s.t.Helper()
+	return s.uploadAs("<img src=x onerror=alert(1)>.json", field, content)
+}
+
+func (s *site) uploadAs(name, field, content string) *httptest.ResponseRecorder {
+	s.t.Helper()
 	var body bytes.Buffer
 	form := multipart.NewWriter(&body)
-	part, err := form.CreateFormFile(field, "<img src=x onerror=alert(1)>.json")
+	part, err := form.CreateFormFile(field, name)
 	if err != nil {
 		s.t.Fatal(err)
 	}
@@ -236,6 +241,9 @@ func TestUpload(t *testing.T) {
 		t.Error("an unfinished file is refused")
 	}
 	s.page(422, s.upload("other", frost), "no file")
+	if p := s.page(422, s.uploadAs("", "file", ""), "none chosen"); !strings.Contains(p.words(), "Choose a design file") {
+		t.Error("choosing no file is not said as such")
+	}
 	s.page(415, s.send("/designs/upload", url.Values{"file": {"x"}}), "no multipart")
 	s.page(413, s.upload("file", strings.Repeat(" ", maxFile+1)), "a large file")
 	if list, _ := s.store.Designs(t.Context()); len(list) != 2 {

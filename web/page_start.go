@@ -172,7 +172,10 @@ func (s *Server) refuseFile(w http.ResponseWriter, r *http.Request, problems []v
 	return s.showList(w, r, http.StatusUnprocessableEntity, specification{}, problems)
 }
 
-// uploaded reads the file of the form.
+var errNoFile = &Failure{Status: http.StatusUnprocessableEntity, Title: "No file", Detail: "Choose a design file first."}
+
+// uploaded reads the file of the form; a browser sends an empty part without a name
+// when none was chosen.
 func uploaded(r *http.Request) ([]byte, error) {
 	form, err := r.MultipartReader()
 	if err != nil {
@@ -182,11 +185,13 @@ func uploaded(r *http.Request) ([]byte, error) {
 		part, err := form.NextPart()
 		switch {
 		case errors.Is(err, io.EOF):
-			return nil, &Failure{Status: http.StatusUnprocessableEntity, Title: "No file", Detail: "Choose a design file first."}
+			return nil, errNoFile
 		case err != nil:
 			return nil, unreadable(err)
 		case part.FormName() != "file":
 			continue
+		case part.FileName() == "":
+			return nil, errNoFile
 		}
 		raw, err := io.ReadAll(http.MaxBytesReader(nil, part, maxFile))
 		if err != nil {
