@@ -12,6 +12,9 @@
                      its inputs fills and adds rows. Rows are the children of the
                      [data-rows] inside; a <template> inside holds one more row, in
                      whose attributes __row__ stands for the number of the row.
+     data-silence    in <template id="silence">: what is said in #trouble while the
+                     server does not answer. The sheet then triggers "again" on its
+                     form, now and then.
      data-watch      around figures: a td, dd, strong or [data-figure] whose text an
                      answer changes wears the class "flash" for a moment.
 
@@ -44,6 +47,30 @@
     const version = document.querySelector('#carried [name=version]');
     if (version && ctx.request.body?.has?.('version')) ctx.request.body.set('version', version.value);
   });
+
+  // No answer
+
+  const retryTime = 2000; // ms
+  let retry;
+  const silence = () => document.querySelector('[data-silence]');
+
+  // A request that got no whole answer is said to have got none, and what stands on
+  // the sheet is sent again until it gets through.
+  document.addEventListener('htmx:error', ({detail: {ctx}}) => {
+    if (!ctx || ctx.text !== undefined) return;
+    const words = document.querySelector('#silence');
+    if (words && !silence()) document.querySelector('#trouble').prepend(words.content.cloneNode(true));
+    clearTimeout(retry);
+    retry = setTimeout(() => htmx.trigger('form[data-sheet]', 'again'), retryTime);
+  });
+
+  document.addEventListener('htmx:before:response', () => {
+    clearTimeout(retry);
+    silence()?.remove();
+  });
+
+  // The browser asks before it drops what could not be sent.
+  addEventListener('beforeunload', (event) => { if (silence()) event.preventDefault(); });
 
   // Pasting a curve
 

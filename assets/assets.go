@@ -25,9 +25,10 @@ var files embed.FS
 
 // HTMXConfig is the content of <meta name="htmx-config"> on every page. A server
 // error swaps nothing, so that the last good answer stays; a 422 does swap, since
-// it carries the form with its errors. The indicator's stylesheet is left out:
-// nothing here spins.
-const HTMXConfig = `{"includeIndicatorCSS":false,"noSwap":[204,304,"5xx"]}`
+// it carries the form with its errors. What a person types, chooses or opens is
+// theirs: an answer that follows from it never resets it. The indicator's
+// stylesheet is left out: nothing here spins.
+const HTMXConfig = `{"includeIndicatorCSS":false,"noSwap":[204,304,"5xx"],"morphIgnore":["data-htmx-powered","value","selected","open"]}`
 
 // ChartStyle is the source that a page's style-src needs beside 'self': the hash
 // of the fixed stylesheet that the vendored Plot writes into each drawing. (Its

@@ -35,16 +35,27 @@ func readEdit(r *http.Request) (edit, error) {
 	}
 	v := r.PostForm
 	e := edit{values: v, structure: v.Get("structure"), do: v.Get("do"), note: v.Get("note.revision"), sight: sightOf(v, "view.")}
-	versions := v["version"]
-	if len(versions) == 0 {
-		return edit{}, &Failure{Status: http.StatusBadRequest, Title: "Incomplete form", Detail: "The form came without its version. Load the sheet again."}
-	}
 	var err error
-	// The last one counts: the button that overwrites carries the current version.
-	if e.version, err = strconv.ParseInt(versions[len(versions)-1], 10, 64); err != nil {
-		return edit{}, &Failure{Status: http.StatusBadRequest, Title: "Unreadable form", Detail: "Its version is no number. Load the sheet again."}
+	e.version, err = versionOf(v["version"])
+	return e, err
+}
+
+// versionOf returns the highest version that a form carries: the button that
+// overwrites brings the current one, beside the older one of the form. A browser
+// sends them in the order of the page, whichever was pressed.
+func versionOf(texts []string) (int64, error) {
+	if len(texts) == 0 {
+		return 0, &Failure{Status: http.StatusBadRequest, Title: "Incomplete form", Detail: "The form came without its version. Load the sheet again."}
 	}
-	return e, nil
+	var highest int64
+	for _, text := range texts {
+		version, err := strconv.ParseInt(text, 10, 64)
+		if err != nil {
+			return 0, &Failure{Status: http.StatusBadRequest, Title: "Unreadable form", Detail: "Its version is no number. Load the sheet again."}
+		}
+		highest = max(highest, version)
+	}
+	return highest, nil
 }
 
 // parseForm reads a form of the usual kind, and says clearly what else came.

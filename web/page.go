@@ -3,7 +3,6 @@ package web
 import (
 	"bytes"
 	"net/http"
-	"strings"
 
 	"github.com/a-h/templ"
 
@@ -11,15 +10,10 @@ import (
 	"lossbook/web/view"
 )
 
-// swapping sets up the library that swaps answers in. What a person types,
-// chooses or opens is theirs: an answer that follows from it never resets it.
-var swapping = strings.TrimSuffix(assets.HTMXConfig, "}") +
-	`,"morphIgnore":["data-htmx-powered","value","selected","open"]}`
-
 // frame is what every page has around its content.
 func frame(title string) view.Page {
 	return view.Page{Title: title, Assets: view.Assets{
-		Style: assets.URL("app.css"), Icon: assets.URL("icon.svg"), Swap: swapping,
+		Style: assets.URL("app.css"), Icon: assets.URL("icon.svg"), Swap: assets.HTMXConfig,
 		Scripts: []string{
 			assets.URL("lib/htmx.min.js"), assets.URL("lib/d3.min.js"), assets.URL("lib/plot.umd.min.js"),
 			assets.URL("chart.js"), assets.URL("app.js"),
