@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"testing"
 
+	"github.com/chromedp/cdproto/emulation"
 	"github.com/chromedp/chromedp"
 )
 
@@ -31,11 +32,13 @@ func TestSamplesAreRemovedInOneClickAndStayAway(t *testing.T) {
 	want(b, gone, true)
 }
 
+// On paper nothing is left that is only for a screen, and each page says what it
+// is of.
 func TestPagesPrint(t *testing.T) {
 	h := serve(t)
 	h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "first"})
 	b := h.tab()
-	for _, path := range []string{"/", frostSheet, frostSheet + "/revisions/1"} {
+	for path, mark := range map[string]string{frostSheet: "revision 1", frostSheet + "/revisions/1": "revision 1"} {
 		b.open(path)
 		pdf, err := chromedp.Run(b.ctx, chromedp.PrintToPDF(chromedp.PDFPreferCSSPageSize()))
 		if err != nil {
@@ -44,5 +47,11 @@ func TestPagesPrint(t *testing.T) {
 		if n := bytes.Count(pdf, []byte("/Type /Page\n")); n < 1 {
 			t.Errorf("%s prints %d pages", path, n)
 		}
+		if _, err := chromedp.Call(b.ctx, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{Media: "print"}); err != nil {
+			t.Fatal(err)
+		}
+		want(b, `[...document.querySelectorAll('nav, button, .notice, .skip')].some(e => e.checkVisibility())`, false)
+		want(b, `(e => e.checkVisibility() && e.textContent.includes('`+mark+`') && e.textContent.includes('Night-frost'))(document.querySelector('.printmark'))`, true)
+		want(b, `getComputedStyle(document.querySelector('.ledger thead')).display`, "table-header-group")
 	}
 }

@@ -76,7 +76,7 @@ func (h *host) tab() *tab {
 		h.t.Fatal(err)
 	}
 	bound, cancel := chromedp.NewContext(chromium(), chromedp.WithNewBrowserContext())
-	ctx, stop := context.WithTimeout(bound, time.Minute)
+	ctx, stop := context.WithTimeout(bound, 3*time.Minute)
 	b := &tab{t: h.t, ctx: ctx, host: h}
 	if err := chromedp.Do(bound); err != nil { // binds the tab to the context without the limit
 		h.t.Fatal(err)
@@ -161,7 +161,7 @@ func (b *tab) text(selector string) string {
 // answer, so that is waited for too.
 func (b *tab) wait(condition string) {
 	b.t.Helper()
-	end := time.Now().Add(10 * time.Second)
+	end := time.Now().Add(20 * time.Second)
 	for {
 		is, err := chromedp.Run(b.ctx, chromedp.Evaluate[bool]("Boolean("+condition+")"))
 		if err == nil && is {
