@@ -189,11 +189,15 @@ func TestTimeFromKeystrokeToAnswer(t *testing.T) {
 	t.Logf("end of the typing pause to answer painted, %d edits: median %.0f ms, worst %.0f ms", len(times), times[len(times)/2], times[len(times)-1])
 }
 
-// Nothing of a sheet is sent twice, and nothing is left over in the page's model
-// of it: what stands in the entries is what the data file has.
+// An answer changes what follows from the entries and nothing else: what stands in
+// them is what the data file has, and what was opened stays open.
 func TestSheetAndDataFileAgree(t *testing.T) {
 	h := serve(t)
 	b := h.visit(frostSheet)
+	b.click(saying("more entries"))
+	b.click(`e.matches('figure summary')`)
+	const opened = `[...document.querySelectorAll('#fields details.more, figure details')].map(d => Number(d.open)).join('')`
+	before := evaluate[string](b, opened)
 	b.replace("name", "Mast, second try")
 	b.says("h1", "Mast, second try")
 	b.wait(`document.title.startsWith('Mast, second try')`)
@@ -203,4 +207,5 @@ func TestSheetAndDataFileAgree(t *testing.T) {
 			t.Errorf("%s shows %q and is kept as %q", path, got, h.kept(path))
 		}
 	}
+	want(b, opened, before)
 }
