@@ -60,7 +60,7 @@ func (b *tab) changeSwitch() {
 // readCurve moves a chart's cursor by the arrows.
 func (b *tab) readCurve() {
 	b.t.Helper()
-	b.tabTo(`e.matches('loss-chart[kind=efficiency] .pane, loss-chart .pane')`)
+	b.tabTo(`e.matches('loss-chart .pane')`)
 	b.press("Right", "Right")
 	first := b.text(`loss-chart .reading`)
 	b.press("Right")

@@ -81,12 +81,6 @@ func (b *tab) enter(path, value string) {
 // field is the selector of a sheet's entry.
 func field(path string) string { return fmt.Sprintf(`[id="f-%s"]`, path) }
 
-// at focuses an entry with the caret before its n-th character.
-func (b *tab) at(path string, n int) {
-	b.t.Helper()
-	evaluate[chromedp.Void](b, fmt.Sprintf(`(e => { e.focus(); e.setSelectionRange(%d, %[1]d) })(document.querySelector('%s'))`, n, field(path)))
-}
-
 // replace puts the focus into an entry and types a value in place of its own.
 func (b *tab) replace(path, value string) {
 	b.t.Helper()

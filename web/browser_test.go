@@ -189,7 +189,7 @@ func want[T comparable](b *tab, script string, expected T) {
 	}
 }
 
-// picture writes the window, and with whole the page, where -shots says, for eyes
+// picture writes the window and the whole page where -shots says, for eyes
 // to judge; without the flag it does nothing.
 func (b *tab) picture(name string) {
 	b.t.Helper()

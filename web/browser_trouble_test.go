@@ -67,14 +67,14 @@ func TestStoppedServerIsSaidOnARevision(t *testing.T) {
 	b.wait(`!document.querySelector('#trouble').textContent.trim() && location.search.includes('load=')`)
 }
 
-// Two answers to a click are kept in order by the address: back leads back.
+// The address holds the view, so a reload shows the same and back leads back.
 func TestBackLeadsToThePointBefore(t *testing.T) {
 	b := serve(t).visit(frostSheet)
 	before := b.text(efficiency)
 	b.click(`e.matches('.ledger thead a') && e.textContent.trim() === '50'`)
 	b.wait(`document.querySelector('` + efficiency + `').textContent.trim() !== '` + before + `'`)
 	there := b.text(efficiency)
-	b.do(chromedp.Reload()) // the address holds the view
+	b.do(chromedp.Reload())
 	b.drawn()
 	if got := b.text(efficiency); got != there {
 		t.Errorf("the same address shows %s, then %s", there, got)
