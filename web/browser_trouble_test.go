@@ -1,6 +1,7 @@
 package web
 
 import (
+	"fmt"
 	"testing"
 
 	"github.com/chromedp/chromedp"
@@ -37,13 +38,16 @@ func TestStoppedServerIsSaidAndNothingIsLost(t *testing.T) {
 	h := serve(t)
 	b := h.visit(frostSheet)
 	b.expect("Failed to fetch", "ERR_CONNECTION_REFUSED")
+	evaluate[chromedp.Void](b, `window.unanswered = 0; document.addEventListener('htmx:error', () => unanswered++)`)
 	h.stop()
 	b.replace("switch.rds_on", "12m")
 	b.says("#trouble", "Lossbook does not answer")
 	want(b, `document.querySelector('#trouble [data-silence]').checkVisibility()`, true)
 	want(b, `document.activeElement.id + ' ' + document.activeElement.value`, "f-switch.rds_on 12m")
 	want(b, `dispatchEvent(new Event('beforeunload', {cancelable: true}))`, false) // it would ask before it leaves
+	heard := evaluate[int](b, `unanswered`)
 	b.replace("frequency", "210k")
+	b.wait(fmt.Sprintf(`unanswered > %d`, heard)) // so that only sending again helps
 	b.picture("sheet-silent")
 	h.start()
 	b.wait(`!document.querySelector('#trouble').textContent.trim()`)
