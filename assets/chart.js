@@ -38,7 +38,9 @@
   const number = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'negative'});
   const hint = 'Arrow keys or pointer read the values.';
 
-  const quantity = (value, unit) => number.format(value) + (unit ? '\u00a0' + unit : '');
+  // Thousands are set apart by a thin space, as in the tables.
+  const digits = (value) => number.format(value).replaceAll(',', '\u202f');
+  const quantity = (value, unit) => digits(value) + (unit ? '\u00a0' + unit : '');
   const widest = (names) => 7 * Math.max(0, ...names.map((name) => name.length));
   const partFill = (cls) => /^p-[a-z]+$/.test(cls) ? `var(--${cls})` : 'var(--ink)';
 
@@ -75,9 +77,9 @@
   // The axes are drawn by hand: ticks and formats given to a scale don't reach them.
   const axes = (data, x, y) => [
     Plot.gridY(y.ticks, {stroke: 'var(--rule)', strokeOpacity: 1}),
-    Plot.axisY(y.ticks, {label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0, text: number.format}),
+    Plot.axisY(y.ticks, {label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0, text: digits}),
     Plot.axisX(x.ticks ?? x.domain, {label: data.x.label, labelAnchor: 'center', labelArrow: 'none', labelOffset: 36, tickSize: 4,
-      text: (t) => x.ticks ? number.format(t) : t}),
+      text: (t) => x.ticks ? digits(t) : t}),
   ];
 
   // 1, 2 and 5 of each decade, and the domain's own ends where they have room.
@@ -167,7 +169,7 @@
   function stackStops(data, svg) {
     const x = svg.scale('x'), unit = data.y.unit;
     return data.columns.map((column) => {
-      const shares = column.values?.map((v, i) => `${data.parts[i].name} ${number.format(v)}`).join(', ');
+      const shares = column.values?.map((v, i) => `${data.parts[i].name} ${digits(v)}`).join(', ');
       const told = column.reason ?? `${column.total}\u00a0${unit}${column.outside ? '†' : ''}: ${shares}`;
       return {x: x.apply(column.x) + x.bandwidth / 2, dots: [], text: `at ${column.x}\u00a0${data.x.unit} — ${told}`};
     });
