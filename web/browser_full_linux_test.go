@@ -42,6 +42,7 @@ func TestFullDiskIsSaidAndTheDraftStays(t *testing.T) {
 	b.replace("switch.rds_on", "12m")
 	b.says("#trouble", "The disk is full")
 	want(b, `document.activeElement.id + ' ' + document.activeElement.value`, "f-switch.rds_on 12m")
+	want(b, `document.querySelectorAll('#trouble .errors').length + ' ' + document.querySelectorAll('header.page').length`, "1 1")
 	if got := h.kept("switch.rds_on"); got != before {
 		t.Errorf("a full disk kept %q", got)
 	}
