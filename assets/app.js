@@ -72,6 +72,15 @@
   // The browser asks before it drops what could not be sent.
   addEventListener('beforeunload', (event) => { if (silence()) event.preventDefault(); });
 
+  // Leaving: what was typed within the pause before it is sent goes along.
+  let typed = false;
+  document.addEventListener('input', (event) => { if (event.target.form?.matches('[data-sheet]')) typed = true; });
+  document.addEventListener('htmx:before:request', () => { typed = false; });
+  addEventListener('pagehide', () => {
+    const form = document.querySelector('form[data-sheet]');
+    if (typed && form) navigator.sendBeacon(form.getAttribute('action'), new URLSearchParams(new FormData(form)));
+  });
+
   // Pasting a curve
 
   // The cells of pasted text: by tab, else semicolon, else comma, else blanks. A

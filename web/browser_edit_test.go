@@ -112,6 +112,15 @@ func TestReloadKeepsTheDraft(t *testing.T) {
 	b.says(".stale", "Last good answer")
 }
 
+// TestLeavingKeepsWhatWasJustTyped goes away within the pause before an edit is sent.
+func TestLeavingKeepsWhatWasJustTyped(t *testing.T) {
+	h := serve(t)
+	b := h.visit(frostSheet)
+	b.replace("switch.rds_on", "12.5m")
+	b.open("/")
+	h.awaitKept("switch.rds_on", "12.5m")
+}
+
 func TestSwitchingTopologyAndRectifierKeepsEntries(t *testing.T) {
 	h := serve(t)
 	b := h.visit(frostSheet)
