@@ -53,8 +53,8 @@ func setBinned(ctx context.Context, tx *sql.Tx, update string, args ...any) erro
 }
 
 // Purge removes the designs that have been in the bin for 30 days at the given
-// time, and their revisions, and tells how many. The database's own clock has
-// to agree: no call can shorten the 30 days.
+// time, with their revisions and links, and tells how many. The database's own
+// clock has to agree: no call can shorten the 30 days.
 func (s *Store) Purge(ctx context.Context, now time.Time) (purged int, err error) {
 	before := now.Add(-binTime).UnixMicro()
 	due, err := s.due(ctx, before)
@@ -78,9 +78,13 @@ func (s *Store) due(ctx context.Context, before int64) (n int, err error) {
 }
 
 func purge(ctx context.Context, tx *sql.Tx, before int64) (int, error) {
-	_, err := tx.ExecContext(ctx, `DELETE FROM revisions WHERE design IN (SELECT id FROM designs WHERE `+overdue+`)`, before)
-	if err != nil {
-		return 0, err
+	for _, remove := range []string{
+		`DELETE FROM shares WHERE revision IN (SELECT id FROM revisions WHERE design IN (SELECT id FROM designs WHERE ` + overdue + `))`,
+		`DELETE FROM revisions WHERE design IN (SELECT id FROM designs WHERE ` + overdue + `)`,
+	} {
+		if _, err := tx.ExecContext(ctx, remove, before); err != nil {
+			return 0, err
+		}
 	}
 	r, err := tx.ExecContext(ctx, `DELETE FROM designs WHERE `+overdue, before)
 	if err != nil {

@@ -42,6 +42,7 @@ func TestPurge(t *testing.T) {
 	for name, age := range binnedFor {
 		d := create1(t, s, name)
 		save1(t, s, d, "")
+		share1(t, s, d, 1, "")
 		mustRaw(t, s, `UPDATE designs SET deleted_at = ? WHERE id = ?`, time.Now().Add(-age).UnixMicro(), d.ID)
 	}
 	kept := create1(t, s, "kept")
@@ -57,12 +58,13 @@ func TestPurge(t *testing.T) {
 	if n, err := s.Purge(t.Context(), time.Now()); n != 0 || err != nil {
 		t.Errorf("again: purged %d (%v), want none", n, err)
 	}
-	var designs, revisions int
-	if err := s.read.QueryRow(`SELECT (SELECT count(*) FROM designs), (SELECT count(*) FROM revisions)`).Scan(&designs, &revisions); err != nil {
+	var designs, revisions, links int
+	const counts = `SELECT (SELECT count(*) FROM designs), (SELECT count(*) FROM revisions), (SELECT count(*) FROM shares)`
+	if err := s.read.QueryRow(counts).Scan(&designs, &revisions, &links); err != nil {
 		t.Fatal(err)
 	}
-	if designs != 3 || revisions != 3 {
-		t.Errorf("%d designs and %d revisions left, want 3 and 3", designs, revisions)
+	if designs != 3 || revisions != 3 || links != 2 {
+		t.Errorf("%d designs, %d revisions and %d links left, want 3, 3 and 2", designs, revisions, links)
 	}
 }
 

@@ -24,6 +24,7 @@ const oldDatabases = "../testdata/databases"
 type contents struct {
 	Designs, Bin []Design
 	Revisions    []Revision
+	Shares       []Share `json:",omitempty"` // none in layout 1
 }
 
 // Data files of every layout there has been keep opening, and say the same.
@@ -70,8 +71,9 @@ func readAll(t *testing.T, path string, known schema) string {
 	for _, d := range all.Designs {
 		for n := range d.Revisions {
 			r, err := s.Revision(t.Context(), d.ID, n+1)
-			errs[0] = errors.Join(errs[0], err)
-			all.Revisions = append(all.Revisions, r)
+			links, err2 := s.Shares(t.Context(), d.ID, n+1)
+			errs[0] = errors.Join(errs[0], err, err2)
+			all.Revisions, all.Shares = append(all.Revisions, r), append(all.Shares, links...)
 		}
 	}
 	if err := errors.Join(errs[:]...); err != nil {
@@ -117,6 +119,12 @@ func fillOldDatabase(t *testing.T, path string, known schema) {
 		t.Fatal(err)
 	}
 	save1(t, s, d, "")
+	share1(t, s, d, 1, "for the review")
+	revoked, _ := share1(t, s, d, 1, "sent by mistake")
+	if err := s.RevokeShare(t.Context(), d.ID, 1, revoked.ID); err != nil {
+		t.Fatal(err)
+	}
+	share1(t, s, d, 2, "")
 	binned := create1(t, s, "in the bin")
 	save1(t, s, binned, "its revision")
 	if err := s.Delete(t.Context(), binned.ID); err != nil {

@@ -1,4 +1,5 @@
-// Package store keeps designs and their revisions in one SQLite file.
+// Package store keeps designs, their revisions and the links to those in one
+// SQLite file.
 //
 // It never computes and never interprets: drafts, designs and results are
 // JSON that callers give and get back byte for byte. Everything that is

@@ -1,6 +1,7 @@
 package store
 
 import (
+	"fmt"
 	"io/fs"
 	"path/filepath"
 	"slices"
@@ -18,14 +19,20 @@ const addColumn = `ALTER TABLE designs ADD COLUMN colour TEXT NOT NULL DEFAULT '
 
 // nextLayout is the present layout with steps that a later version might add.
 func nextLayout(steps ...string) fs.FS {
-	const first = "0001_designs_and_revisions.up.sql"
-	b, err := fs.ReadFile(migrations.Files, first)
+	files := fstest.MapFS{}
+	present, err := fs.Glob(migrations.Files, "*.sql")
 	if err != nil {
 		panic(err)
 	}
-	files := fstest.MapFS{first: {Data: b}}
+	for _, name := range present {
+		b, err := fs.ReadFile(migrations.Files, name)
+		if err != nil {
+			panic(err)
+		}
+		files[name] = &fstest.MapFile{Data: b}
+	}
 	for i, s := range steps {
-		files["000"+string(rune('2'+i))+"_later.up.sql"] = &fstest.MapFile{Data: []byte(s)}
+		files[fmt.Sprintf("%04d_later.up.sql", len(present)+1+i)] = &fstest.MapFile{Data: []byte(s)}
 	}
 	return files
 }
@@ -60,7 +67,8 @@ func TestUpgradeKeepsADatedCopy(t *testing.T) {
 		t.Errorf("the steps did not run: %q, %v", colour, err)
 	}
 	closeNow(t, s)
-	kept := path + ".layout-1.20270102T020405Z"
+	present := current(t).latest
+	kept := fmt.Sprintf("%s.layout-%d.20270102T020405Z", path, present)
 	if got := filesBelow(t, filepath.Dir(path)); !slices.Equal(got, []string{filepath.Base(path), filepath.Base(kept)}) {
 		t.Errorf("left %v", got)
 	}
@@ -69,7 +77,7 @@ func TestUpgradeKeepsADatedCopy(t *testing.T) {
 	if diff := cmp.Diff(want, dump(t, openAt(t, kept).read)); diff != "" {
 		t.Errorf("the kept copy differs:\n%s", diff)
 	}
-	checkRefused(t, filepath.Dir(path), path, ErrNewer, "newer Lossbook (layout 3, this one knows up to 1)")
+	checkRefused(t, filepath.Dir(path), path, ErrNewer, fmt.Sprintf("newer Lossbook (layout %d, this one knows up to %d)", present+2, present))
 
 	if s, err = openNext(t, path, addColumn, `never run again`); err != nil {
 		t.Fatal(err)
