@@ -27,7 +27,12 @@ func apiRoutes(r chi.Router, s *Server) {
 		r.Get("/designs/{id:[0-9]+}/revisions", s.handle(s.listRevisions))
 		r.Post("/designs/{id:[0-9]+}/revisions", s.handle(s.postRevision))
 		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}", s.handle(s.getRevision))
-		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(s.revisionCSV))
+		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(savedCSV(s.savedDesign)))
+		const share = "/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/share"
+		r.Get(share, s.handle(s.listShares))
+		r.Post(share, s.handle(s.postShare))
+		r.Delete(share, s.handle(s.deleteShares))
+		r.Delete(share+"/{share:[0-9]+}", s.handle(s.deleteShare))
 	})
 }
 

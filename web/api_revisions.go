@@ -142,13 +142,18 @@ func (s *Server) getRevision(w http.ResponseWriter, r *http.Request) error {
 
 // revision finds the revision that a request's address names.
 func (s *Server) revision(r *http.Request) (store.Revision, error) {
-	id, err := number(r, "id")
+	id, n, err := revisionNumbers(r)
 	if err != nil {
 		return store.Revision{}, err
 	}
-	n, err := number(r, "n")
-	if err != nil {
-		return store.Revision{}, err
+	return s.store.Revision(r.Context(), id, n)
+}
+
+// revisionNumbers reads the design and the revision of a request's address.
+func revisionNumbers(r *http.Request) (id int64, n int, err error) {
+	if id, err = number(r, "id"); err != nil {
+		return 0, 0, err
 	}
-	return s.store.Revision(r.Context(), id, int(n))
+	of, err := number(r, "n")
+	return id, int(of), err
 }

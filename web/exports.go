@@ -18,31 +18,39 @@ import (
 func exportRoutes(r chi.Router, s *Server) {
 	r.Get("/designs/{id:[0-9]+}/efficiency.csv", s.handle(s.draftCSV))
 	r.Get("/designs/{id:[0-9]+}/design.json", s.handle(s.draftJSON))
-	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(s.revisionCSV))
-	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/design.json", s.handle(s.revisionJSON))
+	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(savedCSV(s.savedDesign)))
+	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/design.json", s.handle(savedJSON(s.savedDesign)))
 }
 
-// revisionCSV gives the table as it was saved.
-func (s *Server) revisionCSV(w http.ResponseWriter, r *http.Request) error {
-	saved, design, err := s.savedDesign(r)
-	if err != nil {
-		return err
+// finder finds the revision that a request's address names, by its number or by
+// a link.
+type finder func(r *http.Request) (store.Revision, *budget.Design, error)
+
+// savedCSV gives the table as it was saved.
+func savedCSV(find finder) handler {
+	return func(w http.ResponseWriter, r *http.Request) error {
+		saved, design, err := find(r)
+		if err != nil {
+			return err
+		}
+		revision := revisionOf(saved)
+		rows, err := revision.rows()
+		if err != nil {
+			return err
+		}
+		return writeCSV(w, fileName(design.Name, saved.Number, "efficiency.csv"), design, rows)
 	}
-	revision := revisionOf(saved)
-	rows, err := revision.rows()
-	if err != nil {
-		return err
-	}
-	return writeCSV(w, fileName(design.Name, saved.Number, "efficiency.csv"), design, rows)
 }
 
-// revisionJSON gives the design as it was saved.
-func (s *Server) revisionJSON(w http.ResponseWriter, r *http.Request) error {
-	saved, design, err := s.savedDesign(r)
-	if err != nil {
-		return err
+// savedJSON gives the design as it was saved.
+func savedJSON(find finder) handler {
+	return func(w http.ResponseWriter, r *http.Request) error {
+		saved, design, err := find(r)
+		if err != nil {
+			return err
+		}
+		return writeFile(w, fileName(design.Name, saved.Number, "design.json"), saved.DesignJSON)
 	}
-	return writeFile(w, fileName(design.Name, saved.Number, "design.json"), saved.DesignJSON)
 }
 
 func (s *Server) savedDesign(r *http.Request) (store.Revision, *budget.Design, error) {

@@ -97,7 +97,7 @@ func (s *Server) fail(w http.ResponseWriter, r *http.Request, err error) {
 	f := failureOf(err)
 	if f.Status >= http.StatusInternalServerError {
 		f.ID = rand.Text()[:10]
-		s.log.ErrorContext(r.Context(), f.Title, "id", f.ID, "method", r.Method, "path", r.URL.Path, "cause", err)
+		s.log.ErrorContext(r.Context(), f.Title, "id", f.ID, "method", r.Method, "path", loggedPath(r), "cause", err)
 	}
 	if isAPI(r) {
 		writeProblem(w, f)

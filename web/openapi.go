@@ -36,6 +36,7 @@ type operation struct {
 const (
 	onDesign   = "/designs/{id}"
 	onRevision = "/designs/{id}/revisions/{n}"
+	onShare    = onRevision + "/share"
 )
 
 func operations() []operation {
@@ -54,6 +55,11 @@ func operations() []operation {
 			body: ref("RevisionRequest"), status: "201", answer: revision, refusals: "400 404 409 413 415 422 507"},
 		{method: "get", path: onRevision, summary: "Read a revision as it was saved", status: "200", answer: revision, refusals: "404"},
 		{method: "get", path: onRevision + "/efficiency.csv", summary: "The saved results as a table", status: "200", answer: object{"type": "string"}, kind: "text/csv", refusals: "404"},
+		{method: "post", path: onShare, summary: "Make a link that opens this revision, and nothing else, to whoever has it; its address is told this once",
+			body: ref("ShareRequest"), status: "201", answer: ref("ShareMade"), refusals: "400 404 413 415 422 507"},
+		{method: "get", path: onShare, summary: "List the links to a revision, the latest first", status: "200", answer: listOf("shares", "ShareHead"), refusals: "404"},
+		{method: "delete", path: onShare, summary: "Revoke every link to a revision", status: "204", refusals: "404 507"},
+		{method: "delete", path: onShare + "/{share}", summary: "Revoke a link", status: "204", refusals: "404 507"},
 	}
 }
 
@@ -82,7 +88,7 @@ func (op operation) describe() object {
 		described["requestBody"] = object{"required": true, "content": content("application/json", op.body)}
 	}
 	var parameters []object
-	for _, name := range []string{"id", "n"} {
+	for _, name := range []string{"id", "n", "share"} {
 		if strings.Contains(op.path, "{"+name+"}") {
 			parameters = append(parameters, object{"name": name, "in": "path", "required": true, "schema": object{"type": "integer", "minimum": 1}})
 		}

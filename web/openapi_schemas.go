@@ -20,6 +20,7 @@ func schemas() object {
 		"DesignHead": reflect.TypeFor[designHead](), "RevisionHead": reflect.TypeFor[revisionHead](),
 		"Point": reflect.TypeFor[Point](), "Finding": reflect.TypeFor[Finding](),
 		"Revision": reflect.TypeFor[Revision](), "Problem": reflect.TypeFor[problem](),
+		"ShareRequest": reflect.TypeFor[shareRequest](), "ShareMade": reflect.TypeFor[shareMade](), "ShareHead": reflect.TypeFor[shareHead](),
 	} {
 		all[name] = structSchema(t, requiredOf(t))
 	}
@@ -45,7 +46,7 @@ func requiredOf(t reflect.Type) []string {
 		return []string{"design", "version"}
 	case reflect.TypeFor[requestPoint]():
 		return []string{"vin", "iout"}
-	case reflect.TypeFor[revisionRequest]():
+	case reflect.TypeFor[revisionRequest](), reflect.TypeFor[shareRequest]():
 		return nil
 	}
 	var names []string

@@ -48,7 +48,10 @@ func back(w http.ResponseWriter, r *http.Request, address string) error {
 // failurePage tells a person what a script is told by problem details.
 func failurePage(w http.ResponseWriter, r *http.Request, f *Failure) {
 	fault := view.Fault{Page: frame(f.Title), Heading: f.Title, Words: []string{f.Detail},
-		Details: problemsOf(f.Fields, false), Back: view.Link{Text: "All designs", Href: "/"}}
+		Details: problemsOf(f.Fields, false), Shared: isShared(r)}
+	if !fault.Shared {
+		fault.Back = view.Link{Text: "All designs", Href: "/"}
+	}
 	fault.Page.Failed = true
 	if f.ID != "" {
 		fault.Words = append(fault.Words, "The log has the cause under "+f.ID+".")

@@ -8,6 +8,7 @@ import (
 	"strconv"
 	"time"
 
+	"lossbook/assets"
 	"lossbook/budget"
 	"lossbook/store"
 	"lossbook/web/view"
@@ -66,47 +67,71 @@ func (s *Server) reopenRevision(w http.ResponseWriter, r *http.Request) error {
 // revisionPage shows a saved state as it was saved; nothing on it is computed
 // anew but the comparison that the banner speaks of.
 func (s *Server) revisionPage(w http.ResponseWriter, r *http.Request) error {
-	kept, err := s.design(r)
-	if err != nil {
-		return err
-	}
 	saved, design, err := s.savedDesign(r)
 	if err != nil {
 		return err
 	}
-	page, err := revisionModel(r.Context(), kept, saved, design, sightOf(r.URL.Query(), ""))
+	page, err := s.revisionModel(r, saved, design)
 	if err != nil {
 		return err
 	}
-	if live(r) {
-		return show(w, r, http.StatusOK, view.RevisionAnswer(page))
-	}
-	return show(w, r, http.StatusOK, view.RevisionPage(page))
+	return showRevision(w, r, http.StatusOK, page)
 }
 
-func revisionModel(ctx context.Context, kept store.Design, saved store.Revision, design *budget.Design, g sight) (view.Revision, error) {
-	n := strconv.Itoa(saved.Number)
-	name := nameOf(design.Name)
-	page := view.Revision{
-		Page: frame(name + ", revision " + n), ID: strconv.FormatInt(kept.ID, 10), Number: n, Name: name, Note: saved.Note, About: design.Note,
-		When: moment(saved.CreatedAt), Stamp: saved.CreatedAt.Format(time.RFC3339),
-		Draft:  view.Link{Text: "the draft", Href: sheetAddress(kept.ID)},
-		Reopen: revisionAddress(kept.ID, saved.Number) + "/reopen",
-		Parts:  givenParts(design),
+// showRevision draws the page, or what a script swaps into it.
+func showRevision(w http.ResponseWriter, r *http.Request, status int, page view.Revision) error {
+	if live(r) {
+		return show(w, r, status, view.RevisionAnswer(page))
 	}
+	return show(w, r, status, view.RevisionPage(page))
+}
+
+// revisionModel is the page of a revision within its design: the ways on to the
+// others, back to the draft, and to its links.
+func (s *Server) revisionModel(r *http.Request, saved store.Revision, design *budget.Design) (view.Revision, error) {
+	kept, err := s.store.Design(r.Context(), saved.Design)
+	if err != nil {
+		return view.Revision{}, err
+	}
+	base := revisionAddress(kept.ID, saved.Number)
+	page, err := savedPage(r.Context(), saved, design, sightOf(r.URL.Query(), ""), base)
+	if err != nil {
+		return page, err
+	}
+	page.Page.Assets.Scripts = append(page.Page.Assets.Scripts, assets.URL("share.js"))
+	page.Draft, page.Reopen = view.Link{Text: "the draft", Href: sheetAddress(kept.ID)}, base+"/reopen"
 	if saved.Number > 1 {
-		page.Previous = view.Link{Text: "revision " + strconv.Itoa(saved.Number-1), Href: revisionAddress(kept.ID, saved.Number-1)}
+		page.Previous = revisionLink(kept.ID, saved.Number-1)
 	}
 	if saved.Number < kept.LatestRevision {
-		page.Next = view.Link{Text: "revision " + strconv.Itoa(saved.Number+1), Href: revisionAddress(kept.ID, saved.Number+1)}
+		page.Next = revisionLink(kept.ID, saved.Number+1)
 	}
 	page.Lost = "The draft as it stands is replaced; keep it as a revision first if you need it."
+	if page.Answers.Banner != "" {
+		page.Answers.Banner += " Reopen it as the draft to see what it says now."
+	}
+	page.Answers.Links, err = s.links(r.Context(), saved)
+	return page, err
+}
+
+func revisionLink(id int64, n int) view.Link {
+	return view.Link{Text: "revision " + strconv.Itoa(n), Href: revisionAddress(id, n)}
+}
+
+// savedPage is what every page of a revision shows of it. All its addresses lie
+// at base, which is the page's own.
+func savedPage(ctx context.Context, saved store.Revision, design *budget.Design, g sight, base string) (view.Revision, error) {
+	n, name := strconv.Itoa(saved.Number), nameOf(design.Name)
+	page := view.Revision{
+		Page: frame(name + ", revision " + n), Number: n, Name: name, Note: saved.Note, About: design.Note,
+		When: moment(saved.CreatedAt), Stamp: saved.CreatedAt.Format(time.RFC3339),
+		Parts: givenParts(design),
+	}
 	points, findings, err := savedResults(saved)
 	if err != nil {
 		return page, err
 	}
 	p := remembered(design, points, findings, g)
-	base := revisionAddress(kept.ID, saved.Number)
 	if page.Answers, err = p.answers(base, false, files(base)); err != nil {
 		return page, err
 	}
@@ -143,7 +168,7 @@ func banner(ctx context.Context, saved store.Revision, design *budget.Design, po
 		return fmt.Sprintf("Saved with model %s. Model %s, which runs now, no longer takes this design; the figures below are those that were saved.",
 			saved.Model, budget.ModelVersion), nil
 	case differs(points, now.Points):
-		return fmt.Sprintf("Saved with model %s. Model %s, which runs now, gives other figures; those below are the saved ones. Reopen it as the draft to see the new ones.",
+		return fmt.Sprintf("Saved with model %s. Model %s, which runs now, gives other figures; those below are the saved ones.",
 			saved.Model, budget.ModelVersion), nil
 	}
 	return "", nil

@@ -26,4 +26,7 @@ func pageRoutes(r chi.Router, s *Server) {
 	const revision = design + "/revisions/{n:[0-9]+}"
 	r.Get(revision, s.handle(s.revisionPage))
 	r.Post(revision+"/reopen", s.handle(s.reopenRevision))
+	r.Get(revision+"/share", s.handle(s.linksPlace))
+	r.Post(revision+"/share", s.handle(s.makeLink))
+	r.Post(revision+"/share/{share:[0-9]+}/revoke", s.handle(s.revokeLink))
 }

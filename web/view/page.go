@@ -49,6 +49,7 @@ type Fault struct {
 	Words   []string // a paragraph each
 	Details []Problem
 	Back    Link
+	Shared  bool // its reader has a link and nothing else
 }
 
 // Link leads to another page, or to a place on this one.

@@ -64,6 +64,7 @@ type Answers struct {
 	Count    string // "4 notes"
 	Sizing   *Sizing
 	Missing  []MissingPart
+	Links    *Links // of a revision; nil where none can be made
 }
 
 // Views are the choices of what is shown, kept in the address.
@@ -153,6 +154,7 @@ type Revision struct {
 	Previous, Next, Draft Link
 	Reopen                string
 	Lost                  string // what reopening it would drop
+	Shared                bool   // its reader has a link and nothing else
 	Parts                 []Given
 	Answers               Answers
 }
