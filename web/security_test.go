@@ -129,7 +129,7 @@ func TestOwnOriginIsServed(t *testing.T) {
 // dump is everything the API tells of the store.
 func (s *site) dump() string {
 	all := s.ask("GET", "/api/v1/designs", "").Body.String()
-	for _, path := range []string{"/api/v1/designs/1", "/api/v1/designs/1/revisions", "/api/v1/designs/1/revisions/1"} {
+	for _, path := range []string{"/api/v1/designs/1", "/api/v1/designs/1/revisions", "/api/v1/designs/1/revisions/1", "/api/v1/designs/1/revisions/1/share"} {
 		all += s.ask("GET", path, "").Body.String()
 	}
 	return all
