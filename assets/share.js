@@ -5,8 +5,8 @@
 
   const link = document.querySelector('[data-link]');
   if (!link) return;
+  // It takes the focus by its own attribute, before or after this script runs.
   for (const moment of ['focus', 'click']) link.addEventListener(moment, () => link.select());
-  link.focus();
   link.select();
 
   // Off this machine a page without encryption has no clipboard.

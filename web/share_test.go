@@ -2,7 +2,10 @@ package web
 
 import (
 	"fmt"
+	"io"
+	"net"
 	"net/http"
+	"net/http/httptest"
 	"net/url"
 	"regexp"
 	"slices"
@@ -201,6 +204,32 @@ func TestLinksThatOpenNothing(t *testing.T) {
 	s.want(204, "DELETE", "/api/v1/designs/1", "")
 	for _, path := range []string{binned, binned + "/efficiency.csv", live} {
 		check(path)
+	}
+}
+
+// An address that is none, with a bare %, is refused before any of this: alike,
+// whether a link stands in it or not.
+func TestAddressThatIsNone(t *testing.T) {
+	s := seeded(t)
+	token := strings.TrimPrefix(s.shared(""), "/share/")
+	server := httptest.NewServer(s.router)
+	defer server.Close()
+	answers := map[string]bool{}
+	for _, path := range []string{"/share/%", "/share/" + token + "%", "/share/" + token + "/%zz"} {
+		conn, err := net.Dial("tcp", server.Listener.Addr().String())
+		if err != nil {
+			t.Fatal(err)
+		}
+		defer conn.Close()
+		fmt.Fprintf(conn, "GET %s HTTP/1.1\r\nHost: %s\r\n\r\n", path, testHost)
+		answer, err := io.ReadAll(conn)
+		if err != nil || !strings.HasPrefix(string(answer), "HTTP/1.1 400 ") || strings.Contains(string(answer), token) {
+			t.Errorf("%s: %v %s", path, err, answer)
+		}
+		answers[string(answer)] = true
+	}
+	if len(answers) != 1 {
+		t.Errorf("%d different answers: %v", len(answers), answers)
 	}
 }
 
