@@ -114,7 +114,7 @@ func TestLinkWithTooLongANote(t *testing.T) {
 	if attr(field, "value") != long || attr(field, "aria-invalid") != "true" || !strings.HasPrefix(p.title(), "Error: ") {
 		t.Error("the note is lost or not marked")
 	}
-	if got := words(p.all(withClass("errors"))[0]); !strings.Contains(got, "at most 200") {
+	if got := words(p.one("links")); !strings.Contains(got, "can’t be made yet") || !strings.Contains(got, "at most 200") {
 		t.Errorf("said: %s", got)
 	}
 	list, err := s.store.Shares(t.Context(), 1, 1)
