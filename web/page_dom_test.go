@@ -55,7 +55,7 @@ func (s *site) moved(w *httptest.ResponseRecorder) string {
 func (p page) all(holds func(*html.Node) bool) []*html.Node {
 	var found []*html.Node
 	for n := range p.root.Descendants() {
-		if n.Type == html.ElementNode && holds(n) {
+		if n.Type == html.ElementNode && holds(n) && !inTemplate(n) {
 			found = append(found, n)
 		}
 	}
