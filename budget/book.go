@@ -27,7 +27,7 @@ func (b *Budget) book(s *situation, a answer) {
 	is := (m.vout*f.io + s.stage) / f.Vin
 	b.Iin = is + (m.fedFromInput(f)+inputESR(s, nil))/f.Vin
 	b.Iterations, b.Residual = a.iterations, a.residual
-	b.stageLoss = s.stage
+	b.guess = s.guess
 }
 
 func (b *Budget) bookItems(s *situation) {

@@ -88,7 +88,7 @@ func (m *Model) observe(b *Budget) []observation {
 func (m *Model) situationOf(b *Budget) *situation {
 	s := &situation{m: m, frame: m.frameAt(b.Point), mode: b.Mode}
 	t := b.Temperatures
-	s.evaluate(b.stageLoss, [3]float64{t.Switch, t.Rectifier, t.Inductor})
+	s.evaluate(b.guess, [3]float64{t.Switch, t.Rectifier, t.Inductor})
 	return s
 }
 

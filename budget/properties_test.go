@@ -26,8 +26,11 @@ func everyNumber(b *Budget, f func(what string, v float64)) {
 	}
 	for i := range b.Items {
 		f(b.Items[i].Part+"."+b.Items[i].Kind, b.Items[i].Power)
-		for _, term := range b.Items[i].Terms() {
-			f(b.Items[i].Part+"."+b.Items[i].Kind+" "+term.Name, term.Value)
+		w, _ := b.model.Working(b, b.Items[i].Part, b.Items[i].Kind)
+		for _, step := range w.Steps {
+			for _, term := range append(step.Terms, step.Term) {
+				f(w.Part+"."+w.Kind+" "+term.Name, term.Value)
+			}
 		}
 	}
 }

@@ -35,23 +35,8 @@ type Item struct {
 	Part, Kind string
 	Power      float64 // W
 	Outside    bool    // a curve was held flat for it
-	terms      [maxTerms]Term
-	count      int
+	step       *Step   // what its function notes while its working is asked for
 }
-
-// Term is a named quantity an item was computed from. The names are those of
-// the item's formula; the unit is that of the value.
-type Term struct {
-	Name  string
-	Value float64
-	Unit  string
-}
-
-const maxTerms = 16
-
-// Terms returns the quantities the item was computed from, in the order of its
-// formula.
-func (it *Item) Terms() []Term { return it.terms[:it.count] }
 
 // Current describes a periodic current, in A.
 type Current struct{ Mean, Min, Max, RMS float64 }
@@ -88,7 +73,7 @@ type Budget struct {
 	Iterations    int     // evaluations of all losses it took
 	Residual      float64 // how far the answer may still be: the larger share of the loss or of a temperature in kelvin
 
-	stageLoss float64 // W, from which the whole situation follows again
+	guess float64 // W of stage loss, from which the whole situation follows again
 }
 
 // Level is the weight of a finding.
