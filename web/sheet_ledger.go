@@ -71,18 +71,16 @@ func (p *picture) ledger(base string, take []view.Link) *view.Ledger {
 		l.Columns = append(l.Columns, view.Link{Text: share, Href: p.spot.atLoad(share).address(base), Here: i == p.spot.load})
 	}
 	items := itemsOf(p.design, p.columns)
-	var zero []string
+	var zero []Item
 	for _, g := range groups {
-		lines, nothing := p.groupLines(g, items, unit)
+		lines, nothing := p.groupLines(g, items, unit, base)
 		l.Lines = append(l.Lines, lines...)
 		zero = append(zero, nothing...)
 	}
 	if !slices.ContainsFunc(p.columns, func(q Point) bool { return q.Settled() }) {
 		l.Lines = []view.LedgerLine{{Head: "no figures", Cells: make([]view.LedgerCell, len(p.columns))}}
 	}
-	if len(zero) > 0 {
-		l.Zero = "0 at every load: " + strings.Join(zero, ", ") + "."
-	}
+	l.Zero = p.zeroLinks(zero, base)
 	p.explainGaps(l)
 	l.Foot = p.foot(unit)
 	l.Outside = slices.ContainsFunc(p.columns, outsideACurve)
@@ -95,13 +93,13 @@ func outsideACurve(q Point) bool {
 
 // groupLines draws a part's subtotal and its items. Items that are 0 at every
 // load are only named, so that the table holds what there is.
-func (p *picture) groupLines(g group, items []Item, unit watts) (lines []view.LedgerLine, zero []string) {
+func (p *picture) groupLines(g group, items []Item, unit watts, base string) (lines []view.LedgerLine, zero []Item) {
 	var members []int
 	for i, it := range items {
 		switch {
 		case !slices.Contains(g.parts, it.Part):
 		case p.nothing(i):
-			zero = append(zero, zeroWords(g, it))
+			zero = append(zero, it)
 		default:
 			members = append(members, i)
 		}
@@ -111,16 +109,19 @@ func (p *picture) groupLines(g group, items []Item, unit watts) (lines []view.Le
 	}
 	lines = append(lines, view.LedgerLine{Head: g.title, Class: "part " + g.class, Square: true, Cells: p.cells(members, unit, false)})
 	for _, i := range members {
-		lines = append(lines, view.LedgerLine{Head: itemWords(items[i]), Class: g.class, Cells: p.cells([]int{i}, unit, true)})
+		cells := p.cells([]int{i}, unit, true)
+		p.openers(cells, items[i], unit, base)
+		lines = append(lines, view.LedgerLine{Head: itemWords(items[i]), Class: g.class, Cells: cells})
 	}
 	return lines, zero
 }
 
-func zeroWords(g group, it Item) string {
-	if len(g.parts) > 1 || it.Part == "layout" {
-		return itemWords(it)
+func zeroWords(it Item) string {
+	switch it.Part {
+	case "switch", "rectifier", "inductor":
+		return partWords[it.Part] + " " + itemWords(it)
 	}
-	return partWords[it.Part] + " " + itemWords(it)
+	return itemWords(it)
 }
 
 // nothing reports whether an item is 0 wherever there are figures; where there

@@ -21,7 +21,7 @@ func (s Sheet) Href() string { return "/designs/" + s.ID }
 
 // Hidden is what the form carries along: the version it was made from, which
 // entries it has, and the view that is shown.
-type Hidden struct{ Version, Structure, Vin, Ambient, Load, Scale string }
+type Hidden struct{ Version, Structure, Vin, Ambient, Load, Scale, Working string }
 
 // Stale says that the design was changed elsewhere since the form was drawn.
 type Stale struct{ Words, Theirs, Keep, Version string }
@@ -59,6 +59,7 @@ type Answers struct {
 	Head     *Head
 	Charts   []Chart
 	Ledger   *Ledger
+	Working  *Working
 	Warnings []Finding // exceeded ratings and cautions, worst first
 	Notes    []Finding
 	Count    string // "4 notes"
@@ -76,6 +77,7 @@ type Views struct {
 	Ambient Field
 	Load    Field
 	Scale   string // of the load axis, carried along
+	Working string // that is open, carried along
 	At      string // "12 V in, 2 A (100 %), 45 °C" in words
 }
 
@@ -112,7 +114,7 @@ type Ledger struct {
 	Columns []Link // the loads
 	Lines   []LedgerLine
 	Foot    []LedgerLine
-	Zero    string // names the items that are 0 at every load
+	Zero    []Link // the items that are 0 at every load, with why
 	Outside bool   // some figure is marked
 }
 
@@ -125,7 +127,10 @@ type LedgerLine struct {
 
 // LedgerCell is one figure; Class shades it by its share. Columns without
 // figures have one cell that says why, over so many rows and columns.
-type LedgerCell struct{ Text, Class, Rows, Columns string }
+type LedgerCell struct {
+	Text, Class, Rows, Columns string
+	Working                    Link // how the figure came about; its text says so in full
+}
 
 // MissingPart is a part with the entries it lacks.
 type MissingPart struct {
