@@ -29,7 +29,7 @@ func everyNumber(b *Budget, f func(what string, v float64)) {
 		w, _ := b.model.Working(b, b.Items[i].Part, b.Items[i].Kind)
 		for _, step := range w.Steps {
 			for _, term := range append(step.Terms, step.Term) {
-				f(w.Part+"."+w.Kind+" "+term.Name, term.Value)
+				f(b.Items[i].Part+"."+b.Items[i].Kind+" "+term.Name, term.Value)
 			}
 		}
 	}

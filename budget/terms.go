@@ -6,6 +6,8 @@ import "lossbook/budget/stage"
 // Like the losses they note what they use, and what they note may have a row here.
 // The entry tells whose term it is, where parts share a letter.
 var definitions = map[string]func(s *situation, st *Step, e *entry){
+	"P_out": outputPower, "P_switch": heatOfPart, "P_rectifier": heatOfPart, "P_inductor": heatOfPart, "P_input": heatOfPart, "P_output": heatOfPart,
+	"P_snubber": heatOfPart, "P_drive": heatOfPart, "P_controller": heatOfPart, "P_layout": heatOfPart,
 	"T_j": temperatureRise, "T_L": temperatureRise, "P_part": heatOfPart, "P_loss": wholeLoss,
 
 	"I_L": meanCurrent, "I_s": stageCurrent, "I_o": outputCurrent, "P_stage": stageLoss, "P_aux": auxiliaryPower,
@@ -71,6 +73,14 @@ func stageLoss(s *situation, st *Step, e *entry) {
 	st.found("the sum of the stage’s losses at this point: all but those of drive, controller and input capacitor", "")
 }
 
+var powerOut = how("V_out·I_out", "the load")
+
+func outputPower(s *situation, st *Step, e *entry) {
+	st.by(powerOut)
+	st.given("V_out", "output.voltage", s.m.vout)
+	st.note("I_out", s.frame.Iout, "A")
+}
+
 // Currents
 
 var meanCurrents = map[string]method{
@@ -114,9 +124,9 @@ func auxiliaryPower(s *situation, st *Step, e *entry) {
 
 // balanced is what the flux balance gives as a whole.
 func balanced(s *situation, st *Step, e *entry) {
-	words := "from the balance of flux with the drops at the mean current: the inductor current rises for d_1 of the period and falls for the rest"
+	words := "from the balance of flux with the drops at the mean current: the inductor current rises while the switch conducts and falls for the rest of the period"
 	if s.mode == DCM {
-		words = "from the balance of flux, discontinuous: the inductor current rises from 0 for d_1 of the period, falls back for d_2 and rests"
+		words = "from the balance of flux, discontinuous: the inductor current rises from 0 while the switch conducts, falls back to it and rests"
 	}
 	st.found(words, byBalance, "inductor.inductance", "frequency")
 }

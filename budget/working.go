@@ -7,11 +7,12 @@ import (
 // Working is how one figure of a budget came about: the figure itself, then each
 // quantity it was computed from that was itself computed, nearest first.
 type Working struct {
-	Part, Kind string
-	Power      float64 // W
-	Outside    bool    // a curve was held flat for it
-	Steps      []Step
+	Outside bool // a curve was held flat for it
+	Steps   []Step
 }
+
+// Value returns the figure, in the unit of the first step.
+func (w *Working) Value() float64 { return w.Steps[0].Value }
 
 // Step is one quantity with the formula it follows from. The formula, evaluated with
 // the terms, gives the value.
@@ -44,7 +45,8 @@ func how(text, source string) method { return method{formula.Must(text), source}
 
 // Working returns how the item of a settled budget came about, from a repetition of
 // its last evaluation: the same functions give the same figures, and this time note
-// what they use. There is none of a point without figures or of an unknown item.
+// what they use. There is none of a point without figures, of an unknown item, or
+// where a quantity is beyond any number.
 func (m *Model) Working(b *Budget, part, kind string) (Working, bool) {
 	e := m.entryOf(part, kind)
 	if b.State != Settled || e == nil {
@@ -58,9 +60,22 @@ func (m *Model) Working(b *Budget, part, kind string) (Working, bool) {
 	if it.step.Formula == nil {
 		it.step.Terms = nil
 	}
-	w := Working{Part: part, Kind: kind, Power: power, Outside: it.Outside, Steps: []Step{*it.step}}
+	w := Working{Outside: it.Outside, Steps: []Step{*it.step}}
 	w.follow(s, e)
-	return w, true
+	return w, w.writable()
+}
+
+// writable reports whether every number behind a figure can be written: absurd entries
+// let a coefficient overflow although the loss, worked out in logarithms, does not.
+func (w *Working) writable() bool {
+	for _, step := range w.Steps {
+		for _, term := range append(step.Terms, step.Term) {
+			if !finite(term.Value) {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 func (m *Model) entryOf(part, kind string) *entry {

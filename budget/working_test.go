@@ -16,7 +16,7 @@ var ofThePoint = []string{"V_in", "I_out", "T_a"}
 type shown struct {
 	t                        *testing.T
 	items, formulas, reasons int
-	steps, words             int
+	steps, words, totals     int
 	methods                  map[string]bool
 }
 
@@ -36,11 +36,12 @@ func TestWorking(t *testing.T) {
 			for i := range b.Items {
 				s.item(name, m, &c.Design, &b, b.Items[i])
 			}
+			s.below(name, m, &c.Design, &b)
 		}
 	}
-	t.Logf("%d items: %d formulas, %d reasons; behind them %d formulas and %d in words; %d different formulas",
-		s.items, s.formulas, s.reasons, s.steps, s.words, len(s.methods))
-	if s.items < 4000 || s.formulas < 3000 || s.reasons < 500 || s.steps < 10000 || len(s.methods) < 70 {
+	t.Logf("%d items: %d formulas, %d reasons; behind them %d formulas and %d in words; %d totals; %d different formulas",
+		s.items, s.formulas, s.reasons, s.steps, s.words, s.totals, len(s.methods))
+	if s.items < 4000 || s.formulas < 3000 || s.reasons < 500 || s.steps < 10000 || s.totals < 1500 || len(s.methods) < 70 {
 		t.Error("too little was checked")
 	}
 }
@@ -50,7 +51,7 @@ func (s *shown) item(name string, m *budget.Model, d *budget.Design, b *budget.B
 	s.items++
 	where := name + " " + it.Part + "." + it.Kind
 	w, known := m.Working(b, it.Part, it.Kind)
-	if !known || w.Power != it.Power || w.Outside != it.Outside || len(w.Steps) == 0 || w.Steps[0].Value != it.Power {
+	if !known || w.Value() != it.Power || w.Outside != it.Outside {
 		s.t.Errorf("%s: cell %v, working %+v", where, it.Power, w)
 		return
 	}
@@ -68,12 +69,53 @@ func (s *shown) item(name string, m *budget.Model, d *budget.Design, b *budget.B
 	s.behind(where, w.Steps, d)
 }
 
+// below checks the rows that follow from all losses. A sum's terms are cells.
+func (s *shown) below(name string, m *budget.Model, d *budget.Design, b *budget.Budget) {
+	s.t.Helper()
+	for what, value := range map[string]float64{"switch": b.Temperatures.Switch, "rectifier": b.Temperatures.Rectifier, "inductor": b.Temperatures.Inductor} {
+		w, known := m.TemperatureWorking(b, what)
+		s.total(name+" temperature "+what, b, w, known, value)
+		s.behind(name, w.Steps, d)
+	}
+	w, known := m.EfficiencyWorking(b)
+	s.total(name+" efficiency", b, w, known, b.Efficiency)
+	s.behind(name, w.Steps, d)
+	w, known = m.Loss(b)
+	s.total(name+" loss", b, w, known, b.Loss)
+	s.behind(name, w.Steps, d)
+	for _, parts := range [][]string{{"switch"}, {"input_capacitor", "output_capacitor", "snubber"}, {"drive", "controller"}, {"layout"}} {
+		sum := 0.0
+		for _, it := range b.Items {
+			if slices.Contains(parts, it.Part) {
+				sum += it.Power
+			}
+		}
+		w, known := m.Subtotal(b, parts...)
+		s.total(name+" sum of "+parts[0], b, w, known, sum)
+	}
+}
+
+func (s *shown) total(where string, b *budget.Budget, w budget.Working, known bool, value float64) {
+	s.t.Helper()
+	if known != (b.State == budget.Settled) {
+		s.t.Errorf("%s: of a point that is %s a working is given: %v", where, b.State, known)
+	}
+	if !known {
+		return
+	}
+	s.totals++
+	if math.Abs(w.Value()-value) > 1e-14*math.Abs(value) {
+		s.t.Errorf("%s is %v, its working %v", where, value, w.Value())
+	}
+	s.step(where, w.Steps[0])
+}
+
 // behind checks that every term is entered, belongs to the point, or has a step of its
 // own that gives its value.
 func (s *shown) behind(where string, steps []budget.Step, d *budget.Design) {
 	s.t.Helper()
 	own := map[string]float64{}
-	for _, step := range steps[1:] {
+	for _, step := range steps[min(1, len(steps)):] {
 		own[step.Name] = step.Value
 		s.step(where+" "+step.Name, step)
 	}

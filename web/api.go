@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/json"
 	"errors"
+	"fmt"
 	"io"
 	"mime"
 	"net/http"
@@ -40,6 +41,8 @@ func apiRoutes(r chi.Router, s *Server) {
 type budgetRequest struct {
 	Design *budget.Design `json:"design"`
 	Points []requestPoint `json:"points"`
+
+	Working bool `json:"working"` // with how each item came about
 }
 
 // requestPoint is a point asked for; its ambient may be left to the design.
@@ -57,7 +60,11 @@ func postBudget(w http.ResponseWriter, r *http.Request) error {
 	}
 	wrong = designErrors(wrong, ask.Design)
 	points, missing := ask.points()
-	if wrong = append(wrong, missing...); len(wrong) > 0 {
+	wrong = append(wrong, missing...)
+	if ask.Working && len(ask.Points) > maxWorkings {
+		wrong = append(wrong, budget.FieldError{Path: "points", Message: fmt.Sprintf("holds %d points; with the working at most %d are taken", len(ask.Points), maxWorkings)})
+	}
+	if len(wrong) > 0 {
 		return invalid(wrong)
 	}
 	found, wrong, err := compute(r.Context(), ask.Design, points)
@@ -66,6 +73,11 @@ func postBudget(w http.ResponseWriter, r *http.Request) error {
 	}
 	if len(wrong) > 0 {
 		return invalid(wrong)
+	}
+	if ask.Working {
+		if err := found.work(r.Context(), ask.Design); err != nil {
+			return err
+		}
 	}
 	return writeJSON(w, http.StatusOK, found)
 }

@@ -16,6 +16,10 @@ type Answer struct {
 	Findings []Finding `json:"findings"`
 }
 
+// maxWorkings bounds the points of one call that asks for the working of every item:
+// each is some hundred times as long as its figures.
+const maxWorkings = 500
+
 // compute is the one way from a design to its results. Nil points are the
 // default grid. What is wrong with design or points comes back as a list;
 // the error is that of an ended request.
@@ -37,7 +41,7 @@ func compute(ctx context.Context, d *budget.Design, points []budget.Point) (Answ
 func answer(ctx context.Context, model *budget.Model, points []budget.Point) (Answer, []budget.FieldError, error) {
 	budgets := make([]budget.Budget, len(points))
 	rows := make([]Point, len(points))
-	var items []budget.Item // one ledger for all: with their terms, 10,000 would fill 150 MB
+	var items []budget.Item // one ledger for all: of a budget that was looked at only its marks are needed again
 	for i, p := range points {
 		if err := ctx.Err(); err != nil {
 			return Answer{}, nil, err

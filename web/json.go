@@ -153,6 +153,8 @@ func wants(t reflect.Type) jsontext.Kind {
 		return '0'
 	case t.Kind() == reflect.String:
 		return '"'
+	case t.Kind() == reflect.Bool:
+		return 't'
 	case t.Kind() == reflect.Struct || t.Kind() == reflect.Map:
 		return '{'
 	case t.Kind() == reflect.Slice || t.Kind() == reflect.Array:
@@ -167,7 +169,11 @@ var kindWords = map[jsontext.Kind]string{
 
 func (r *jsonReader) mismatch(path string, want, got jsontext.Kind) error {
 	if words, ok := kindWords[got]; ok { // else the syntax is broken, and skip says how
-		r.refuse(path, "must be %s, not %s", kindWords[want], words)
+		wanted := kindWords[want]
+		if want == 't' {
+			wanted = "true or false"
+		}
+		r.refuse(path, "must be %s, not %s", wanted, words)
 	}
 	return r.skip()
 }

@@ -12,7 +12,7 @@ import (
 )
 
 func (r *jsonReader) scalar(path string, want, kind jsontext.Kind, v reflect.Value) error {
-	if kind != want {
+	if kind != want && !(want == 't' && kind == 'f') {
 		return r.mismatch(path, want, kind)
 	}
 	token, err := r.token()
@@ -23,6 +23,8 @@ func (r *jsonReader) scalar(path string, want, kind jsontext.Kind, v reflect.Val
 	switch v.Kind() {
 	case reflect.String:
 		v.SetString(text)
+	case reflect.Bool:
+		v.SetBool(token.Kind() == 't')
 	case reflect.Float64:
 		value, words := parseNumber(text)
 		if words != "" {

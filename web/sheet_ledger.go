@@ -65,7 +65,7 @@ func (u watts) write(power float64) string {
 func (p *picture) ledger(base string, take []view.Link) *view.Ledger {
 	unit := wattsFor(p.columns)
 	l := &view.Ledger{Take: take, Caption: unit.unit + " at " + quantityOf(p.spot.vin, "V", 4) + " in, " +
-		degreesCelsius(p.spot.ambient) + "; shade: share of the column’s loss"}
+		degreesCelsius(p.spot.ambient) + "; shade: share of the column’s loss; a figure opens how it came about"}
 	for i, q := range p.columns {
 		share := loadShare(q.Iout / p.design.Output.Current.V)
 		l.Columns = append(l.Columns, view.Link{Text: share, Href: p.spot.atLoad(share).address(base), Here: i == p.spot.load})
@@ -82,7 +82,7 @@ func (p *picture) ledger(base string, take []view.Link) *view.Ledger {
 	}
 	l.Zero = p.zeroLinks(zero, base)
 	p.explainGaps(l)
-	l.Foot = p.foot(unit)
+	l.Foot = p.foot(unit, base)
 	l.Outside = slices.ContainsFunc(p.columns, outsideACurve)
 	return l
 }
@@ -107,10 +107,12 @@ func (p *picture) groupLines(g group, items []Item, unit watts, base string) (li
 	if len(members) == 0 {
 		return nil, zero
 	}
-	lines = append(lines, view.LedgerLine{Head: g.title, Class: "part " + g.class, Square: true, Cells: p.cells(members, unit, false)})
+	sums := p.cells(members, unit, false)
+	p.openers(sums, subtotalKey+"."+g.key(), unit.unit, base)
+	lines = append(lines, view.LedgerLine{Head: g.title, Class: "part " + g.class, Square: true, Cells: sums})
 	for _, i := range members {
 		cells := p.cells([]int{i}, unit, true)
-		p.openers(cells, items[i], unit, base)
+		p.openers(cells, items[i].Part+"."+items[i].Kind, unit.unit, base)
 		lines = append(lines, view.LedgerLine{Head: itemWords(items[i]), Class: g.class, Cells: cells})
 	}
 	return lines, zero
@@ -197,16 +199,16 @@ func (p *picture) explainGaps(l *view.Ledger) {
 }
 
 // foot draws total, efficiency and temperatures.
-func (p *picture) foot(unit watts) []view.LedgerLine {
+func (p *picture) foot(unit watts, base string) []view.LedgerLine {
 	rows := []struct {
-		head, class string
-		write       func(f *Figures) string
+		head, unit, class, key string
+		write                  func(f *Figures) string
 	}{
-		{"Loss, " + unit.unit, "sum", func(f *Figures) string { return unit.write(f.Loss) }},
-		{"Efficiency, %", "eta", func(f *Figures) string { return percent(f.Efficiency) }},
-		{p.heated("Switch", "switch"), "", func(f *Figures) string { return degrees(f.Temperatures.Switch) }},
-		{p.heated("Rectifier", rectifierOf(p.design)), "", func(f *Figures) string { return degrees(f.Temperatures.Rectifier) }},
-		{p.heated("Inductor", "inductor"), "", func(f *Figures) string { return degrees(f.Temperatures.Inductor) }},
+		{"Loss, " + unit.unit, unit.unit, "sum", budgetKey + ".loss", func(f *Figures) string { return unit.write(f.Loss) }},
+		{"Efficiency, %", "%", "eta", budgetKey + ".efficiency", func(f *Figures) string { return percent(f.Efficiency) }},
+		{p.heated("Switch", "switch"), "°C", "", temperatureKey + ".switch", func(f *Figures) string { return degrees(f.Temperatures.Switch) }},
+		{p.heated("Rectifier", rectifierOf(p.design)), "°C", "", temperatureKey + ".rectifier", func(f *Figures) string { return degrees(f.Temperatures.Rectifier) }},
+		{p.heated("Inductor", "inductor"), "°C", "", temperatureKey + ".inductor", func(f *Figures) string { return degrees(f.Temperatures.Inductor) }},
 	}
 	var lines []view.LedgerLine
 	for _, row := range rows {
@@ -218,6 +220,7 @@ func (p *picture) foot(unit watts) []view.LedgerLine {
 			}
 			l.Cells = append(l.Cells, view.LedgerCell{Text: text})
 		}
+		p.openers(l.Cells, row.key, row.unit, base)
 		lines = append(lines, l)
 	}
 	return lines

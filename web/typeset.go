@@ -62,9 +62,6 @@ func (s setter) shape(n *formula.Node) (view.Math, int) {
 	case formula.Absolute:
 		return row(sign("|"), first, sign("|")), tight
 	}
-	if n.Text == "exp" {
-		return of(view.MathSuper, leaf(view.MathName, "e"), first), firm
-	}
 	inside := []view.Math{leaf(view.MathName, n.Text), sign("("), first}
 	for _, a := range n.Args[1:] {
 		inside = append(inside, sign(","), s.set(a, loose))
@@ -102,7 +99,7 @@ func valueMath(v float64, unit string) view.Math {
 		parts = append(parts, sign("·"), of(view.MathSuper, leaf(view.MathNumber, "10"), leaf(view.MathNumber, minused(strings.TrimPrefix(exponent, "+")))))
 	}
 	if shown != "" {
-		parts = append(parts, leaf(view.MathUnit, "\u00a0"+shown))
+		parts = append(parts, leaf(view.MathText, "\u00a0"+shown))
 	}
 	if len(parts) == 1 {
 		return parts[0]
@@ -118,7 +115,7 @@ func symbolMath(name string) view.Math {
 	if !has {
 		return leaf(view.MathName, letter)
 	}
-	return of(view.MathSub, leaf(view.MathName, letter), leaf(view.MathName, sub))
+	return of(view.MathSub, leaf(view.MathName, letter), leaf(view.MathText, sub))
 }
 
 func constantMath(text string) view.Math {

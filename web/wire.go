@@ -62,6 +62,28 @@ type Item struct {
 	Kind    string  `json:"kind"`
 	Power   float64 `json:"power"`
 	Outside bool    `json:"outside,omitempty"` // a curve was held flat for it
+	Working []Step  `json:"working,omitempty"` // where it was asked for: the loss, then what it was computed from
+}
+
+// Step is one quantity of a working: its formula, evaluated with the terms, gives the
+// result. Without a formula, words say how it is found.
+type Step struct {
+	Name    string   `json:"name"`
+	Formula string   `json:"formula,omitempty"`
+	Words   string   `json:"words,omitempty"`
+	Terms   []Term   `json:"terms"`
+	Result  float64  `json:"result"`
+	Unit    string   `json:"unit"`
+	Source  string   `json:"source,omitempty"`
+	Inputs  []string `json:"inputs,omitempty"` // paths of entries it rests on beside its terms
+}
+
+// Term is a quantity of a formula; one that is entered has the path of its entry.
+type Term struct {
+	Name  string  `json:"name"`
+	Value float64 `json:"value"`
+	Unit  string  `json:"unit"`
+	Path  string  `json:"path,omitempty"`
 }
 
 // Finding is a rating exceeded, a caution or a note. A design's names the point
@@ -124,7 +146,7 @@ func figuresOf(b *budget.Budget) *Figures {
 		Items:        make([]Item, len(b.Items)),
 	}
 	for i, it := range b.Items {
-		f.Items[i] = Item{it.Part, it.Kind, it.Power, it.Outside}
+		f.Items[i] = Item{Part: it.Part, Kind: it.Kind, Power: it.Power, Outside: it.Outside}
 	}
 	return f
 }

@@ -2,7 +2,6 @@ package web
 
 import (
 	"slices"
-	"strings"
 
 	"lossbook/budget"
 	"lossbook/budget/formula"
@@ -17,52 +16,48 @@ func (p *picture) working(base string) *view.Working {
 		return nil
 	}
 	w := &view.Working{Title: "No such figure", Close: p.spot.opened("").address(base), Cell: p.spot.address(base), At: p.spot.words(p.design)}
-	part, kind, _ := strings.Cut(p.spot.working, ".")
-	row := slices.Index(budget.Ledger(p.design), budget.Row{Part: part, Kind: kind})
+	f, known := figureOf(p.design, p.spot.working)
 	q := p.chosen()
+	if known {
+		w.Title = f.title
+	}
 	switch {
-	case row < 0:
-		w.Unlike = "The ledger has no loss of that name."
+	case !known:
+		w.Unlike = "The ledger has no figure of that name."
 	case q == nil:
 		w.Unlike = "This point was not kept."
 	case !q.Settled():
 		w.Unlike = q.Reason
 	default:
-		p.explain(w, q, part, kind)
+		p.explain(w, q, f)
 	}
 	return w
 }
 
 // explain works the figure out anew from the design. Where that gives another than
 // the one shown, as an older model's may be, it says so instead.
-func (p *picture) explain(w *view.Working, q *Point, part, kind string) {
-	i := slices.IndexFunc(q.Items, func(it Item) bool { return it.Part == part && it.Kind == kind })
-	if i < 0 {
-		w.Unlike = "This loss was not kept."
-		return
-	}
-	w.Title = workingTitle(q.Items[i])
-	found, known := workedOut(p.design, q, part, kind)
-	switch kept := showing(q.Items[i].Power, "W"); {
+func (p *picture) explain(w *view.Working, q *Point, f figure) {
+	shown := f.shown(q.Figures)
+	found, known := f.workedOut(p.design, q)
+	switch kept := "Kept as " + showing(shown, f.unit) + ". Model " + budget.ModelVersion + ", which runs now, "; {
 	case !known:
-		w.Unlike = "Kept as " + kept + ". Model " + budget.ModelVersion + ", which runs now, has no figure here, so there is no working of it."
-	case far(found.Power, q.Items[i].Power):
-		w.Unlike = "Kept as " + kept + ". Model " + budget.ModelVersion + ", which runs now, gives " + showing(found.Power, "W") +
-			", so its working would not be that of the figure kept."
+		w.Unlike = kept + "has no working of it."
+	case far(found.Value(), shown):
+		w.Unlike = kept + "gives " + showing(found.Value(), f.unit) + ", so its working would not be that of the figure kept."
 	default:
 		fillWorking(w, p.design, found)
 	}
 }
 
-// workedOut asks the model how the loss at a point came about.
-func workedOut(d *budget.Design, q *Point, part, kind string) (budget.Working, bool) {
+// workedOut asks the model how the figure came about at a point.
+func (f figure) workedOut(d *budget.Design, q *Point) (budget.Working, bool) {
 	model, err := budget.Prepare(d)
 	if err != nil {
 		return budget.Working{}, false
 	}
 	var b budget.Budget
 	model.At(budget.Point{Vin: q.Vin, Iout: q.Iout, Ambient: q.Ambient}, &b)
-	return model.Working(&b, part, kind)
+	return f.ask(model, &b)
 }
 
 func fillWorking(w *view.Working, d *budget.Design, found budget.Working) {
@@ -143,30 +138,4 @@ func entryOf(entries Draft, path, symbol string) view.WorkingEntry {
 		e.Value, e.Unsupported = f.Options[0].Label, "not stated, so assumed"
 	}
 	return e
-}
-
-// openers lead from the cells of an item to how each figure came about.
-func (p *picture) openers(cells []view.LedgerCell, it Item, unit watts, base string) {
-	for i, q := range p.columns {
-		if !q.Settled() {
-			continue
-		}
-		text := cells[i].Text
-		if text == "·" {
-			text = "0"
-		}
-		sight := p.spot.atLoad(loadShare(q.Iout / p.design.Output.Current.V)).opened(it.Part + "." + it.Kind)
-		cells[i].Working = view.Link{Text: text + " " + unit.unit + ": how it came about", Href: sight.address(base),
-			Here: i == p.spot.load && sight.working == p.spot.working}
-	}
-}
-
-// zeroLinks lead to why losses are 0, at the load that is looked at.
-func (p *picture) zeroLinks(zero []Item, base string) []view.Link {
-	var links []view.Link
-	for _, it := range zero {
-		sight := p.spot.opened(it.Part + "." + it.Kind)
-		links = append(links, view.Link{Text: zeroWords(it), Href: sight.address(base), Here: sight.working == p.spot.working})
-	}
-	return links
 }

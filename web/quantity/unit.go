@@ -76,6 +76,7 @@ var specs = []spec{
 	si("Hz", common+"T", "250k or 1.2M", "hertz").coded("kMG"),
 	si("W", common, "150m or 2.5", "watt", "watts").coded("µmk"),
 	si("J", common, "1.5u", "joule", "joules").coded("nµm"),
+	si("V·s", small, "30u", "volt-seconds").also(symbol("Vs"), symbol("Wb")),
 	si("T", "fpnµmk", "200m", "tesla", "teslas"),
 	si("m", "fpnµmk", "0.5 mm or 70 µm", "metre", "metres", "meter", "meters").
 		also(whole("cm", -2), whole("dm", -1)),

@@ -53,7 +53,7 @@ const (
 	MathName     MathElement = "mi"
 	MathNumber   MathElement = "mn"
 	MathSign     MathElement = "mo"
-	MathUnit     MathElement = "mtext"
+	MathText     MathElement = "mtext" // upright: a unit, the words of a subscript
 	MathFraction MathElement = "mfrac"
 	MathRoot     MathElement = "msqrt"
 	MathSub      MathElement = "msub"

@@ -598,7 +598,7 @@ func mathNode(n Math) templ.Component {
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
-		case MathUnit:
+		case MathText:
 			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 61, "<mtext>")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err

@@ -1,0 +1,122 @@
+package web
+
+import (
+	"slices"
+	"strings"
+
+	"lossbook/budget"
+	"lossbook/web/quantity"
+	"lossbook/web/view"
+)
+
+// figure is a row of the ledger as an address names it: what its cells show, and how
+// the model explains them.
+type figure struct {
+	title string
+	unit  quantity.Unit
+	shown func(f *Figures) float64
+	ask   func(m *budget.Model, b *budget.Budget) (budget.Working, bool)
+}
+
+// The rows that are no items are named by these, before a point.
+const (
+	subtotalKey    = "subtotal"
+	budgetKey      = "budget"
+	temperatureKey = "temperature"
+)
+
+// figureOf finds the row that an address names: "switch.conduction" is an item,
+// "subtotal.switch" a part's sum, "temperature.switch" and "budget.loss" a line of the
+// foot.
+func figureOf(d *budget.Design, key string) (figure, bool) {
+	kind, name, _ := strings.Cut(key, ".")
+	switch kind {
+	case subtotalKey:
+		return subtotalFigure(name)
+	case budgetKey:
+		f, known := budgetFigures[name]
+		return f, known
+	case temperatureKey:
+		return temperatureFigure(name)
+	}
+	return itemFigure(d, kind, name)
+}
+
+func itemFigure(d *budget.Design, part, kind string) (figure, bool) {
+	i := slices.Index(budget.Ledger(d), budget.Row{Part: part, Kind: kind})
+	return figure{
+		title: workingTitle(Item{Part: part, Kind: kind}), unit: "W",
+		shown: func(f *Figures) float64 { return f.Items[i].Power },
+		ask: func(m *budget.Model, b *budget.Budget) (budget.Working, bool) {
+			return m.Working(b, part, kind)
+		},
+	}, i >= 0
+}
+
+func subtotalFigure(name string) (figure, bool) {
+	i := slices.IndexFunc(groups, func(g group) bool { return g.key() == name })
+	if i < 0 {
+		return figure{}, false
+	}
+	g := groups[i]
+	return figure{
+		title: g.title + ", all losses", unit: "W",
+		shown: func(f *Figures) (sum float64) {
+			for _, it := range f.Items {
+				if slices.Contains(g.parts, it.Part) {
+					sum += it.Power
+				}
+			}
+			return sum
+		},
+		ask: func(m *budget.Model, b *budget.Budget) (budget.Working, bool) { return m.Subtotal(b, g.parts...) },
+	}, true
+}
+
+var budgetFigures = map[string]figure{
+	"loss":       {"Loss", "W", func(f *Figures) float64 { return f.Loss }, (*budget.Model).Loss},
+	"efficiency": {"Efficiency", "", func(f *Figures) float64 { return f.Efficiency }, (*budget.Model).EfficiencyWorking},
+}
+
+func temperatureFigure(part string) (figure, bool) {
+	shown, known := map[string]func(f *Figures) float64{
+		"switch":    func(f *Figures) float64 { return f.Temperatures.Switch },
+		"rectifier": func(f *Figures) float64 { return f.Temperatures.Rectifier },
+		"inductor":  func(f *Figures) float64 { return f.Temperatures.Inductor },
+	}[part]
+	return figure{
+		title: capital(part) + ", temperature", unit: "°C", shown: shown,
+		ask: func(m *budget.Model, b *budget.Budget) (budget.Working, bool) {
+			return m.TemperatureWorking(b, part)
+		},
+	}, known
+}
+
+// key names the group in addresses.
+func (g group) key() string { return strings.TrimPrefix(g.class, "p-") }
+
+// openers lead from the cells of a row to how each figure came about.
+func (p *picture) openers(cells []view.LedgerCell, key, unit, base string) {
+	for i, q := range p.columns {
+		if !q.Settled() {
+			continue
+		}
+		text := cells[i].Text
+		if text == "·" {
+			text = "0"
+		}
+		sight := p.spot.atLoad(loadShare(q.Iout / p.design.Output.Current.V)).opened(key)
+		cells[i].Working = view.Link{Text: text + " " + unit + ": how it came about", Href: sight.address(base),
+			Here: i == p.spot.load && key == p.spot.working}
+	}
+}
+
+// zeroLinks lead to why losses are 0, at the load that is looked at.
+func (p *picture) zeroLinks(zero []Item, base string) []view.Link {
+	var links []view.Link
+	for _, it := range zero {
+		key := it.Part + "." + it.Kind
+		links = append(links, view.Link{Text: zeroWords(it), Href: p.spot.opened(key).address(base), Here: key == p.spot.working})
+	}
+	return links
+}
