@@ -249,26 +249,3 @@ func TestNoWorking(t *testing.T) {
 		t.Errorf("only these states were seen: %v", given)
 	}
 }
-
-// A core's coefficient may overflow where its loss, worked out in logarithms, does not.
-func TestWorkingBeyondNumbers(t *testing.T) {
-	c := cases(t)["bench"]
-	c.Design.Inductor.Core = &budget.Core{ReferencePower: budget.N(1e-230), ReferenceFrequency: budget.N(1e15), ReferenceRipple: budget.N(1e-33),
-		Alpha: budget.N(10), Beta: budget.N(10)}
-	m, err := budget.Prepare(&c.Design)
-	if err != nil {
-		t.Fatal(err)
-	}
-	var b budget.Budget
-	for _, p := range c.Points {
-		m.At(p.point(&c.Design), &b)
-		if b.State != budget.Settled {
-			continue
-		}
-		if w, known := m.Working(&b, "inductor", "core"); known {
-			t.Errorf("a working is given: %+v", w)
-		}
-		return
-	}
-	t.Error("no point settles")
-}
