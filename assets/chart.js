@@ -2,6 +2,7 @@
    lib/d3.min.js and lib/plot.umd.min.js loaded before it.
 
      <loss-chart kind="efficiency" scale="log" data="{…}" hx-morph-skip-children></loss-chart>
+     <loss-chart kind="difference" data="{…}" hx-morph-skip-children></loss-chart>
      <loss-chart kind="stack" data="{…}" hx-morph-skip-children></loss-chart>
 
    It draws into itself, again whenever an attribute or its width changes; the page
@@ -18,6 +19,7 @@
                   "points": [[5, 91.35], [10, null], [20, 95.05, 1], …]}]}
      Points rise in x. A null y leaves a gap. A third member 1 says that a curve
      was held flat for this point: it is underlaid, and marked † where it is read.
+   kind "difference" takes the same; 0 is on its axis and ruled, values are signed.
    scale: "log" (what it is without the attribute) or "lin".
 
    data, kind "stack":
@@ -36,11 +38,12 @@
   const lineHeight = 16; // px between names, a little over the height of their letters
   const narrow = 430; // px; below it the parts' names go under the stack, not beside it
   const number = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'negative'});
+  const change = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'exceptZero'});
   const hint = 'Arrow keys or pointer read the values.';
 
   // Thousands are set apart by a thin space, as in the tables.
-  const digits = (value) => number.format(value).replaceAll(',', '\u202f');
-  const quantity = (value, unit) => digits(value) + (unit ? '\u00a0' + unit : '');
+  const digits = (value, form = number) => form.format(value).replaceAll(',', '\u202f');
+  const quantity = (value, unit, form) => digits(value, form) + (unit ? '\u00a0' + unit : '');
   const widest = (names) => 7 * Math.max(0, ...names.map((name) => name.length));
   const partFill = (cls) => /^p-[a-z]+$/.test(cls) ? `var(--${cls})` : 'var(--ink)';
 
@@ -77,7 +80,8 @@
   // The axes are drawn by hand: ticks and formats given to a scale don't reach them.
   const axes = (data, x, y) => [
     Plot.gridY(y.ticks, {stroke: 'var(--rule)', strokeOpacity: 1}),
-    Plot.axisY(y.ticks, {label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0, text: digits}),
+    Plot.axisY(y.ticks, {label: data.y.label, labelAnchor: 'top', labelArrow: 'none', labelOffset: 38, tickSize: 0,
+      text: (t) => digits(t, y.form)}),
     Plot.axisX(x.ticks ?? x.domain, {label: data.x.label, labelAnchor: 'center', labelArrow: 'none', labelOffset: 36, tickSize: 4,
       text: (t) => x.ticks ? digits(t) : t}),
   ];
@@ -98,8 +102,8 @@
       : {type: 'log', domain: [low, high], ticks: logTicks([low, high])};
   }
 
-  function yScale(points) {
-    const [low, high] = d3.extent(points.filter((p) => p[1] !== null), (p) => p[1]);
+  function yScale(points, always) {
+    const [low, high] = d3.extent(points.filter((p) => p[1] !== null).map((p) => p[1]).concat(always));
     const spread = high > low ? [low, high] : [low - 1, high + 1];
     const domain = d3.nice(...spread, 5);
     return {domain, ticks: d3.ticks(...domain, 5)};
@@ -126,28 +130,32 @@
     }), dimensions);
   }
 
-  const figure = (p, unit) => p[1] === null ? 'no figure' : quantity(p[1], unit) + (p[2] ? '†' : '');
+  const figure = (p, unit, form) => p[1] === null ? 'no figure' : quantity(p[1], unit, form) + (p[2] ? '†' : '');
 
   // What the cursor stops at: one entry per load, its place and what it reads.
-  function seriesStops(data, svg) {
+  function seriesStops(data, svg, form) {
     const x = svg.scale('x'), y = svg.scale('y');
     const loads = d3.union(...data.series.map((s) => s.points.map((p) => p[0])));
     return Array.from(loads).sort(d3.ascending).map((load) => {
       const hits = data.series.map((s) => [s.name, s.points.find((p) => p[0] === load) ?? [load, null]]);
-      const text = hits.map(([name, p]) => `${name}: ${figure(p, data.y.unit)}`);
+      const text = hits.map(([name, p]) => `${name}: ${figure(p, data.y.unit, form)}`);
       const dots = hits.filter(([, p]) => p[1] !== null).map(([, p]) => y.apply(p[1]));
       return {x: x.apply(load), dots, text: `at ${quantity(load, data.x.unit)} — ${text.join(', ')}`};
     });
   }
 
-  function drawEfficiency(data, width, scale) {
+  const drawEfficiency = (data, width, scale) => drawLines(data, width, scale, [], number);
+  const drawDifference = (data, width, scale) => drawLines(data, width, scale, [0], change);
+
+  // always: values that the axis holds besides those of the lines, each ruled.
+  function drawLines(data, width, scale, always, form) {
     const points = data.series.flatMap((s) => s.points);
     if (!points.some((p) => p[1] !== null)) return {empty: 'No load here has a figure.'};
-    const x = xScale(points, scale), y = yScale(points);
-    const marks = [...axes(data, x, y), ...data.series.flatMap(seriesMarks), seriesNames(data.series)];
+    const x = xScale(points, scale), y = {...yScale(points, always), form};
+    const marks = [...axes(data, x, y), Plot.ruleY(always, {stroke: 'var(--edge)'}), ...data.series.flatMap(seriesMarks), seriesNames(data.series)];
     const svg = Plot.plot({...frame(width, widest(data.series.map((s) => s.name))), x, y, marks});
     const note = points.some((p) => p[2]) ? '† underlaid: a curve held flat outside its range.' : '';
-    return {svg, note, stops: seriesStops(data, svg)};
+    return {svg, note, stops: seriesStops(data, svg, form)};
   }
 
   // The parts of one column, piled up: [{part, x, low, high, fill}].
@@ -199,7 +207,7 @@
     return {svg, note, stops: stackStops(data, svg), key: beside ? [] : data.parts};
   }
 
-  const drawings = {efficiency: drawEfficiency, stack: drawStack};
+  const drawings = {efficiency: drawEfficiency, difference: drawDifference, stack: drawStack};
 
   function make(tag, attributes, text = '') {
     const element = document.createElement(tag);

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"os"
+	"strings"
 	"testing"
 
 	"github.com/chromedp/chromedp"
@@ -26,6 +27,14 @@ var looks = []struct {
 		b.open(frostSheet)
 		b.replace("switch.rds_on", "14m")
 		b.says("#since", "11 mΩ")
+	}},
+	{"comparison", func(h *host, b *tab) {
+		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "second"})
+		pin := strings.TrimPrefix(frostSheet, "/designs/")
+		b.open("/compare?r=" + pin + ".1&r=" + pin + ".2&r=" + pin + ".1&r=" + pin + ".2&r=" + pin + ".1")
+	}},
+	{"choice of revisions", func(_ *host, b *tab) {
+		b.open("/compare/choose?r=" + strings.TrimPrefix(frostSheet, "/designs/") + ".2")
 	}},
 	{"sheet with an error", func(_ *host, b *tab) {
 		b.expect("status of 422")
@@ -159,6 +168,21 @@ func TestLayoutHolds(t *testing.T) {
 		evaluate[chromedp.Void](b, `document.querySelector('.ledger').scrollIntoView()`)
 		b.picture(fmt.Sprintf("ledger-%d", width))
 		want(b, `(r => r.left >= 0 && r.right <= innerWidth)(document.querySelector('.ledger caption').getBoundingClientRect())`, true)
+	}
+}
+
+// The losses laid side by side keep their width beside the curves and above them.
+func TestComparisonKeepsItsTable(t *testing.T) {
+	h := serve(t)
+	for range 2 {
+		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "kept"})
+	}
+	pin := strings.TrimPrefix(frostSheet, "/designs/")
+	b := h.visit("/compare?r=" + pin + ".1&r=" + pin + ".2")
+	for _, width := range []int64{320, 700, 1100, 1440} {
+		b.size(width, 900, 1)
+		b.picture(fmt.Sprintf("comparison-%d", width))
+		want(b, `document.querySelector('.sum .scroll').clientWidth > 250`, true)
 	}
 }
 

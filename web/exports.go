@@ -20,6 +20,7 @@ func exportRoutes(r chi.Router, s *Server) {
 	r.Get("/designs/{id:[0-9]+}/design.json", s.handle(s.draftJSON))
 	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(savedCSV(s.savedDesign)))
 	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/design.json", s.handle(savedJSON(s.savedDesign)))
+	r.Get("/compare.csv", s.handle(s.compareCSV))
 }
 
 // finder finds the revision that a request's address names, by its number or by

@@ -101,11 +101,13 @@ func (s *Server) revisionModel(r *http.Request, saved store.Revision, design *bu
 	page.Page.Assets.Scripts = append(page.Page.Assets.Scripts, assets.URL("share.js"))
 	page.Draft, page.Reopen = view.Link{Text: "the draft", Href: sheetAddress(kept.ID)}, base+"/reopen"
 	if saved.Number > 1 {
+		page.Compare = append(page.Compare, besideBefore(kept.ID, saved.Number-1, saved.Number))
 		page.Previous = revisionLink(kept.ID, saved.Number-1)
 	}
 	if saved.Number < kept.LatestRevision {
 		page.Next = revisionLink(kept.ID, saved.Number+1)
 	}
+	page.Compare = append(page.Compare, besideLink(pin{kept.ID, saved.Number}))
 	page.Lost = "The draft as it stands is replaced; keep it as a revision first if you need it."
 	if page.Answers.Banner != "" {
 		page.Answers.Banner += " Reopen it as the draft to see what it says now."

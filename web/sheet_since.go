@@ -5,7 +5,6 @@ import (
 	"encoding/json"
 	"fmt"
 	"slices"
-	"strings"
 	"time"
 
 	"lossbook/budget"
@@ -52,11 +51,22 @@ func (s *sheet) since(ctx context.Context) (view.Since, error) {
 	} else if err := s.effect(ctx, &v); err != nil {
 		return v, err
 	}
-	for _, h := range s.revisions {
-		v.Revisions = append(v.Revisions, view.RevisionLine{Name: fmt.Sprintf("Revision %d", h.Number), Note: h.Note,
-			Href: fmt.Sprintf("%s/revisions/%d", s.address(), h.Number), When: moment(h.CreatedAt), Stamp: h.CreatedAt.Format(time.RFC3339)})
-	}
+	v.Revisions, v.Compare = s.keptLines(), besideLink(pin{s.kept.ID, s.kept.LatestRevision})
 	return v, nil
+}
+
+// keptLines list the revisions, each with a way to lay it beside the one before.
+func (s *sheet) keptLines() []view.RevisionLine {
+	var lines []view.RevisionLine
+	for i, h := range s.revisions {
+		line := view.RevisionLine{Name: fmt.Sprintf("Revision %d", h.Number), Note: h.Note,
+			Href: revisionAddress(s.kept.ID, h.Number), When: moment(h.CreatedAt), Stamp: h.CreatedAt.Format(time.RFC3339)}
+		if i+1 < len(s.revisions) { // the newest come first
+			line.Beside = besideBefore(s.kept.ID, s.revisions[i+1].Number, h.Number)
+		}
+		lines = append(lines, line)
+	}
+	return lines
 }
 
 // effect says what the changes did at full load and nominal input, whatever
@@ -96,29 +106,13 @@ func (s *sheet) fullNow(ctx context.Context) (*Point, error) {
 // sheet. A curve that changed is one change.
 func changes(was, now Draft) []view.Change {
 	var list []view.Change
-	add := func(f budget.Field, path string) {
-		if was[path] != now[path] {
-			list = append(list, changed(f, path, was[path], now[path]))
-		}
-		if key := sources + path; was[key] != now[key] {
-			list = append(list, changed(budget.Field{Name: "Source of " + labelOf(path)}, key, was[key], now[key]))
-		}
-	}
-	for _, p := range budget.Parts() {
-		if p.List {
-			for i := range max(was.shownRows(p.Path), now.shownRows(p.Path)) {
-				for _, f := range p.Fields {
-					add(f, below(rowPath(p.Path, i), f.Key))
-				}
-			}
-			continue
-		}
-		for _, f := range p.Fields {
-			if f.Kind == budget.Rows {
-				list = append(list, curveChange(f, was, now)...)
-				continue
-			}
-			add(f, f.Path)
+	for _, e := range entriesAmong(was, now) {
+		switch {
+		case e.alike():
+		case e.field.Kind == budget.Rows:
+			list = append(list, curveChange(e.field, was, now))
+		default:
+			list = append(list, changed(e.field, e.path, e.texts[0], e.texts[1]))
 		}
 	}
 	return list
@@ -148,19 +142,7 @@ func given(text string) string {
 	return text
 }
 
-func curveChange(f budget.Field, was, now Draft) []view.Change {
-	before, after := was.curveText(f.Path), now.curveText(f.Path)
-	if before == after {
-		return nil
-	}
-	return []view.Change{{Label: labelOf(f.Path), Href: "#f-" + f.Path,
-		From: plural(was.shownRows(f.Path), "row", "rows"), To: plural(now.shownRows(f.Path), "row", "rows") + ", other values"}}
-}
-
-func (t Draft) curveText(path string) string {
-	var text strings.Builder
-	for i := range t.shownRows(path) {
-		text.WriteString(t[cellPath(path, i, 0)] + "|" + t[cellPath(path, i, 1)] + "\n")
-	}
-	return text.String()
+func curveChange(f budget.Field, was, now Draft) view.Change {
+	return view.Change{Label: labelOf(f.Path), Href: "#f-" + f.Path,
+		From: plural(was.shownRows(f.Path), "row", "rows"), To: plural(now.shownRows(f.Path), "row", "rows") + ", other values"}
 }

@@ -38,6 +38,7 @@ type Since struct {
 	Why       string // why it can't
 	Send      string // where the button sends the form
 	Revisions []RevisionLine
+	Compare   Link // to choose revisions to be laid side by side
 }
 
 // Change is one entry that differs from the last revision.
@@ -48,7 +49,10 @@ type Change struct {
 }
 
 // RevisionLine is one saved state in the list.
-type RevisionLine struct{ Name, Href, Note, When, Stamp string }
+type RevisionLine struct {
+	Name, Href, Note, When, Stamp string
+	Beside                        Link // to compare it with the one before
+}
 
 // Answers is the right side: what comes of the entries.
 type Answers struct {
@@ -158,6 +162,7 @@ type Revision struct {
 	Model                 string
 	Previous, Next, Draft Link
 	Reopen                string
+	Compare               []Link
 	Lost                  string // what reopening it would drop
 	Shared                bool   // its reader has a link and nothing else
 	Parts                 []Given
