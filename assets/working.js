@@ -1,7 +1,7 @@
 /* The working of a ledger's figure: focus goes to it when a cell opens it, and back to
    the cell when it is closed, by its link or by Escape. The ledger is one stop of the
    Tab key; arrows lead from figure to figure. Without this script the same links load
-   whole pages, and each is a stop.
+   whole pages, and those of the chosen load are stops.
 
    Hooks in the markup: a.figure is a cell's link; #working is the panel, whose
    data-cell is the address of the cell it belongs to, and a.close in it closes it. */

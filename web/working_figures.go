@@ -108,6 +108,7 @@ func (p *picture) openers(cells []view.LedgerCell, key, unit, base string) {
 		sight := p.spot.atLoad(loadShare(q.Iout / p.design.Output.Current.V)).opened(key)
 		cells[i].Working = view.Link{Text: text + " " + unit + ": how it came about", Href: sight.address(base),
 			Here: i == p.spot.load && key == p.spot.working}
+		cells[i].Aside = i != p.spot.load
 	}
 }
 

@@ -70,6 +70,10 @@ func TestEveryFigureIsExplained(t *testing.T) {
 	for _, n := range bare {
 		t.Errorf("the figure %q leads nowhere", words(n))
 	}
+	stops := p.all(func(n *html.Node) bool { return withClass("figure")(n) && attr(n, "tabindex") == "" })
+	if all := p.all(withClass("figure")); len(stops)*len(budget.LoadGrid()) != len(all) || len(stops) < 20 {
+		t.Errorf("%d of %d figures are stops of the Tab key, want those of one load", len(stops), len(all))
+	}
 	zero := p.all(func(n *html.Node) bool {
 		return n.Data == "a" && strings.Contains(attr(n, "hx-get"), "working=") && !withClass("figure")(n)
 	})

@@ -134,6 +134,7 @@ type LedgerLine struct {
 type LedgerCell struct {
 	Text, Class, Rows, Columns string
 	Working                    Link // how the figure came about; its text says so in full
+	Aside                      bool // at another load than the chosen one: the Tab key passes it by
 }
 
 // MissingPart is a part with the entries it lacks.
