@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"errors"
 	"fmt"
+	"maps"
 	"net/http"
 	"strconv"
 	"time"
@@ -106,6 +107,22 @@ func keptAs(d *budget.Design) (draft, complete []byte, err error) {
 	return draft, complete, err
 }
 
+// keptBeside returns a complete design as the store keeps it, with the entries of
+// the draft before it that no design has.
+func keptBeside(d *budget.Design, before []byte) (draft, complete []byte, err error) {
+	typed, err := readDraft(before)
+	if err != nil {
+		return nil, nil, err
+	}
+	next := draftOf(d)
+	maps.Copy(next, typed.besides())
+	if draft, err = json.Marshal(next); err != nil {
+		return nil, nil, err
+	}
+	complete, err = json.Marshal(d)
+	return draft, complete, err
+}
+
 func writeDesign(w http.ResponseWriter, status int, d store.Design) error {
 	resource, err := resourceOf(d)
 	if err != nil {
@@ -144,7 +161,11 @@ func (s *Server) putDesign(w http.ResponseWriter, r *http.Request) error {
 	if wrong = ask.check(wrong); len(wrong) > 0 {
 		return invalid(wrong)
 	}
-	draft, complete, err := keptAs(ask.Design)
+	before, err := s.store.Design(r.Context(), id)
+	if err != nil {
+		return err
+	}
+	draft, complete, err := keptBeside(ask.Design, before.Draft)
 	if err != nil {
 		return err
 	}

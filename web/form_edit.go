@@ -116,7 +116,7 @@ func isEntry(name string) bool {
 	if f.Kind == budget.Rows {
 		want += 2
 	}
-	return name == rippleRatio || known && len(indices.FindAllString(name, -1)) == want && plain(name) && withinRows(name)
+	return name == rippleRatio || isProfileEntry(name) || known && len(indices.FindAllString(name, -1)) == want && plain(name) && withinRows(name)
 }
 
 // plain refuses brackets that are no row numbers.

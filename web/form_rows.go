@@ -143,6 +143,12 @@ func (t Draft) act(do string) bool {
 // cellsOf returns what stands behind the row's path in its entries' names, and
 // how many rows are added at once; nothing for a path that has no rows.
 func cellsOf(path string) (cells []string, most int) {
+	if path == profilePath {
+		for _, c := range profileColumns {
+			cells = append(cells, "."+c.key)
+		}
+		return cells, 1
+	}
 	if f, ok := budget.FieldAt(path); ok && f.Kind == budget.Rows {
 		return []string{"[0]", "[1]"}, addedRows
 	}
@@ -193,7 +199,7 @@ func (t Draft) moveUp(keys []string, root string, gone int) {
 // structure names which entries a sheet has: a live answer leaves the inputs
 // alone as long as it stays the same.
 func (t Draft) structure() string {
-	parts := []string{t["rectifier"]}
+	parts := []string{t["rectifier"], strconv.Itoa(t.shownRows(profilePath))}
 	for _, p := range budget.Parts() {
 		if p.List {
 			parts = append(parts, strconv.Itoa(t.shownRows(p.Path)))

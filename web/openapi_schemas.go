@@ -19,6 +19,7 @@ func schemas() object {
 		"Answer": reflect.TypeFor[Answer](), "DesignResource": reflect.TypeFor[designResource](),
 		"DesignHead": reflect.TypeFor[designHead](), "RevisionHead": reflect.TypeFor[revisionHead](),
 		"Point": reflect.TypeFor[Point](), "Finding": reflect.TypeFor[Finding](),
+		"Weights":  reflect.TypeFor[weightsAnswer](),
 		"Revision": reflect.TypeFor[Revision](), "Problem": reflect.TypeFor[problem](),
 		"ShareRequest": reflect.TypeFor[shareRequest](), "ShareMade": reflect.TypeFor[shareMade](), "ShareHead": reflect.TypeFor[shareHead](),
 	} {

@@ -37,7 +37,7 @@ func (s *Server) keepRevision(w http.ResponseWriter, r *http.Request) error {
 
 // alreadyKept is the number of the last revision if it is this very one, else 0.
 func (s *sheet) alreadyKept(note string) int {
-	if s.last == nil || s.last.note != note || len(changes(s.last.entries, draftOf(s.design))) > 0 {
+	if s.last == nil || s.last.note != note || len(changes(s.last.entries, draftOf(s.design))) > 0 || len(profileChange(s.last.typed, s.draft)) > 0 {
 		return 0
 	}
 	return s.last.number
@@ -134,6 +134,9 @@ func savedPage(ctx context.Context, saved store.Revision, design *budget.Design,
 		return page, err
 	}
 	p := remembered(design, points, findings, g)
+	if p.energy, p.worked, err = savedEnergy(ctx, saved, design); err != nil {
+		return page, err
+	}
 	if page.Answers, err = p.answers(base, false, files(base)); err != nil {
 		return page, err
 	}

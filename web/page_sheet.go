@@ -57,9 +57,8 @@ func (s *Server) editSheet(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return s.notTaken(w, r, e, sh, err)
 	}
-	bad, _ := parted(sh.wrong)
 	status := http.StatusOK
-	if len(bad) > 0 {
+	if len(sh.bad()) > 0 {
 		status = http.StatusUnprocessableEntity
 	}
 	if !live(r) && status == http.StatusOK {

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"net/http"
+	"slices"
 	"strconv"
 
 	"lossbook/budget"
@@ -17,6 +18,7 @@ type sheet struct {
 	draft     Draft               // the entries that are shown
 	design    *budget.Design      // as far as they can be read
 	wrong     []budget.FieldError // what keeps them from a budget
+	beside    []budget.FieldError // what is wrong with the load profile, which no budget needs
 	complete  *budget.Design      // the last complete state; nil if there was none
 	last      *milestone          // the last revision; nil if there is none
 	revisions []store.RevisionHead
@@ -32,6 +34,7 @@ func (s *sheet) address() string { return sheetAddress(s.kept.ID) }
 func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, g sight) (*sheet, error) {
 	sh := &sheet{kept: kept, draft: draft, sight: g}
 	sh.design, sh.wrong = draft.design()
+	_, sh.beside = draft.profile(sh.design)
 	var err error
 	if len(kept.Complete) > 0 {
 		if sh.complete, err = readDesign(kept.Complete); err != nil {
@@ -55,14 +58,15 @@ func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, 
 // model draws the whole page.
 func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 	v := view.Sheet{Page: frame(nameOf(s.draft["name"])), ID: strconv.FormatInt(s.kept.ID, 10), Name: nameOf(s.draft["name"])}
-	bad, missing := parted(s.wrong)
+	_, missing := parted(s.wrong)
+	bad := s.bad()
 	v.Page.Failed = len(bad) > 0
-	b := formOf(s.draft, s.design, s.wrong, s.demanded)
+	b := formOf(s.draft, s.design, slices.Concat(s.beside, s.wrong), s.demanded)
 	b.send = s.address()
 	if s.last != nil {
 		b.was = s.last.entries
 	}
-	v.Sections = b.sections()
+	v.Sections, v.Profile = b.sections(), b.profile()
 	v.Hidden = s.sight.hidden()
 	v.Hidden.Version, v.Hidden.Structure = strconv.FormatInt(s.kept.Version, 10), s.draft.structure()
 	var err error
@@ -79,6 +83,12 @@ func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 		v.Page.Failed = true
 	}
 	return v, nil
+}
+
+// bad is everything typed that is wrong, not merely missing.
+func (s *sheet) bad() []budget.FieldError {
+	bad, _ := parted(slices.Concat(s.wrong, s.beside))
+	return bad
 }
 
 // summary says what is wrong at the top of the page.

@@ -17,7 +17,7 @@ func (p *picture) answers(base string, typed bool, take []view.Link) (view.Answe
 		return view.Answers{}, err
 	}
 	a := view.Answers{Views: p.spot.views(p.design, base, typed, p.vins), Head: p.head(), Charts: charts, Ledger: p.ledger(base, take),
-		Working: p.working(base)}
+		Working: p.working(base), Weights: p.weights()}
 	for _, f := range findingLines(p.findings) {
 		if f.Level == string(budget.Note) {
 			a.Notes = append(a.Notes, f)
@@ -152,6 +152,9 @@ func (s *sheet) answersOf(ctx context.Context) (view.Answers, error) {
 	}
 	p, err := paint(ctx, design, s.sight)
 	if err != nil {
+		return view.Answers{}, err
+	}
+	if p.energy, err = s.draft.energy(ctx, design); err != nil {
 		return view.Answers{}, err
 	}
 	var take []view.Link

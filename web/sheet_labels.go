@@ -90,6 +90,9 @@ func labelOf(path string) string {
 	if path == rippleRatio {
 		return "Ripple ratio"
 	}
+	if name, ok := profileLabel(path); ok {
+		return name
+	}
 	if field, ok := strings.CutPrefix(path, sources); ok {
 		return "Source of " + labelOf(field)
 	}

@@ -16,6 +16,8 @@ type picture struct {
 	columns  []Point // over the load grid, at the voltage looked at
 	lines    []line
 	findings []Finding
+	energy   *Energy // of the load profile; nil where there is none
+	worked   string  // which model the profile was worked with, where it is another than that of the rest
 }
 
 // line is the efficiency over load at one input voltage.

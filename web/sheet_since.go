@@ -18,6 +18,7 @@ type milestone struct {
 	number  int
 	design  *budget.Design
 	entries Draft  // the design's, in the one way of writing them
+	typed   Draft  // as typed
 	full    *Point // at nominal input and full load
 	note    string
 }
@@ -32,7 +33,8 @@ func milestoneOf(r store.Revision) (*milestone, error) {
 	if err := json.Unmarshal(r.Points, &points); err != nil {
 		return nil, fmt.Errorf("stored points: %w", err)
 	}
-	return &milestone{number: r.Number, design: d, entries: draftOf(d), full: fullLoad(d, points), note: r.Note}, nil
+	typed, err := readDraft(r.Draft)
+	return &milestone{number: r.Number, design: d, entries: draftOf(d), typed: typed, full: fullLoad(d, points), note: r.Note}, err
 }
 
 // since draws what changed since the last revision and what that did.
@@ -40,7 +42,7 @@ func (s *sheet) since(ctx context.Context) (view.Since, error) {
 	v := view.Since{Title: "No revision kept yet", Note: s.note, Send: s.address() + "/revisions"}
 	if s.last != nil {
 		v.Title = fmt.Sprintf("Since revision %d", s.last.number)
-		v.Changes = s.readable(changes(s.last.entries, draftOf(s.design)))
+		v.Changes = append(s.readable(changes(s.last.entries, draftOf(s.design))), profileChange(s.last.typed, s.draft)...)
 		if len(v.Changes) == 0 {
 			v.Unchanged = "Nothing has changed."
 		}

@@ -11,6 +11,7 @@ type Sheet struct {
 	Problems []Problem
 	Since    Since
 	Sections []Section
+	Profile  Profile
 	Whole    bool // a live answer replaces all entries: rows came or went
 	Stale    *Stale
 	Answers  Answers
@@ -64,6 +65,7 @@ type Answers struct {
 	Charts   []Chart
 	Ledger   *Ledger
 	Working  *Working
+	Weights  *Weights
 	Warnings []Finding // exceeded ratings and cautions, worst first
 	Notes    []Finding
 	Count    string // "4 notes"
