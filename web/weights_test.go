@@ -196,7 +196,7 @@ func TestProfileOnTheSheet(t *testing.T) {
 	if got := p.words(); !strings.Contains(got, "not a mean of percentages") || !strings.Contains(got, "cover 6 of 24 hours") || !strings.Contains(got, "Load profile 0 rows 1 row") {
 		t.Errorf("the day is not told: %s", got)
 	}
-	form = s.open(200, "/designs/1").form("entries", map[string]string{"note.revision": "used"})
+	form = s.open(200, "/designs/1").form("entries", map[string]string{"note.revision": "first"})
 	s.moved(s.send("/designs/1/revisions", form))
 	if got := s.open(200, "/designs/1/revisions/2").words(); !strings.Contains(got, "A day of the load profile") || !strings.Contains(got, "lost a day") {
 		t.Error("the revision has lost its profile")
