@@ -60,6 +60,8 @@ func operations() []operation {
 		{method: "get", path: onShare, summary: "List the links to a revision, the latest first", status: "200", answer: listOf("shares", "ShareHead"), refusals: "404"},
 		{method: "delete", path: onShare, summary: "Revoke every link to a revision", status: "204", refusals: "404 507"},
 		{method: "delete", path: onShare + "/{share}", summary: "Revoke a link", status: "204", refusals: "404 507"},
+		{method: "get", path: onRevision + "/efficiency.xlsx", summary: "The saved results as a workbook: entries, ledger, table with a chart, findings, provenance",
+			status: "200", answer: object{"type": "string", "contentMediaType": workbookKind}, kind: workbookKind, refusals: "404"},
 		{method: "get", path: onRevision + "/weights", summary: "Weighted efficiencies at each saved input voltage, and the energy a day of the load profile", status: "200", answer: ref("Weights"), refusals: "404"},
 	}
 }

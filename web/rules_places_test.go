@@ -63,7 +63,7 @@ type room struct{ ours, others string }
 
 var rooms = map[string]room{
 	".":                {"web store", "github.com/adrg/xdg"},
-	"web":              {"web/view web/quantity store budget budget/formula assets", "github.com/go-chi/chi/v5 github.com/a-h/templ github.com/go-json-experiment/json"},
+	"web":              {"web/view web/quantity store budget budget/formula assets", "github.com/go-chi/chi/v5 github.com/a-h/templ github.com/go-json-experiment/json github.com/xuri/excelize/v2"},
 	"web/view":         {"", "github.com/a-h/templ"},
 	"web/quantity":     {},
 	"store":            {"budget migrations", "github.com/golang-migrate/migrate/v4 modernc.org/sqlite golang.org/x/sys"},

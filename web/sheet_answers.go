@@ -172,7 +172,7 @@ func (s *sheet) answersOf(ctx context.Context) (view.Answers, error) {
 
 // files are the ways to take a table along, under the address of its page.
 func files(base string) []view.Link {
-	return []view.Link{{Text: "CSV", Href: base + "/efficiency.csv"}, {Text: "design.json", Href: base + "/design.json"}}
+	return []view.Link{{Text: "CSV", Href: base + "/efficiency.csv"}, {Text: "workbook", Href: base + "/efficiency.xlsx"}, {Text: "design.json", Href: base + "/design.json"}}
 }
 
 // parted tells what is wrong from what is only missing.
