@@ -34,7 +34,7 @@ func apiRoutes(r chi.Router, s *Server) {
 		r.Post(share, s.handle(s.postShare))
 		r.Delete(share, s.handle(s.deleteShares))
 		r.Delete(share+"/{share:[0-9]+}", s.handle(s.deleteShare))
-		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.xlsx", s.handle(s.revisionXLSX))
+		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.xlsx", s.handle(savedXLSX(s.savedDesign)))
 		r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/weights", s.handle(s.getWeights))
 	})
 }

@@ -18,7 +18,7 @@ import (
 func exportRoutes(r chi.Router, s *Server) {
 	r.Get("/designs/{id:[0-9]+}/efficiency.csv", s.handle(s.draftCSV))
 	r.Get("/designs/{id:[0-9]+}/efficiency.xlsx", s.handle(s.draftXLSX))
-	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.xlsx", s.handle(s.revisionXLSX))
+	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.xlsx", s.handle(savedXLSX(s.savedDesign)))
 	r.Get("/designs/{id:[0-9]+}/design.json", s.handle(s.draftJSON))
 	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/efficiency.csv", s.handle(savedCSV(s.savedDesign)))
 	r.Get("/designs/{id:[0-9]+}/revisions/{n:[0-9]+}/design.json", s.handle(savedJSON(s.savedDesign)))

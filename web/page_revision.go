@@ -112,6 +112,7 @@ func (s *Server) revisionModel(r *http.Request, saved store.Revision, design *bu
 	if page.Answers.Banner != "" {
 		page.Answers.Banner += " Reopen it as the draft to see what it says now."
 	}
+	page.Answers.Ledger.Paper = view.Link{Text: "paper", Href: base + "/report"}
 	page.Answers.Links, err = s.links(r.Context(), saved)
 	return page, err
 }

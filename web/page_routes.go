@@ -25,6 +25,7 @@ func pageRoutes(r chi.Router, s *Server) {
 	r.Post(design+"/revisions", s.handle(s.keepRevision))
 	const revision = design + "/revisions/{n:[0-9]+}"
 	r.Get(revision, s.handle(s.revisionPage))
+	r.Get(revision+"/report", s.handle(s.reportPage))
 	r.Post(revision+"/reopen", s.handle(s.reopenRevision))
 	r.Get(revision+"/share", s.handle(s.linksPlace))
 	r.Post(revision+"/share", s.handle(s.makeLink))

@@ -28,6 +28,7 @@ func shareRoutes(r chi.Router, s *Server) {
 	const link = sharePrefix + "{token}"
 	r.Get(link, s.handle(s.sharePage))
 	r.Get(link+"/efficiency.csv", s.handle(savedCSV(s.sharedDesign)))
+	r.Get(link+"/efficiency.xlsx", s.handle(savedXLSX(s.sharedDesign)))
 	r.Get(link+"/design.json", s.handle(savedJSON(s.sharedDesign)))
 	r.Get(sharePrefix+"*", s.handle(func(http.ResponseWriter, *http.Request) error { return errNoShare }))
 }

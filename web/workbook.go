@@ -23,13 +23,15 @@ type workbook struct {
 	provenance [][2]string // what it is of, and where that comes from
 }
 
-// revisionXLSX gives the workbook of a revision as it was saved.
-func (s *Server) revisionXLSX(w http.ResponseWriter, r *http.Request) error {
-	saved, design, err := s.savedDesign(r)
-	if err != nil {
-		return err
+// savedXLSX gives the workbook of a revision as it was saved.
+func savedXLSX(find finder) handler {
+	return func(w http.ResponseWriter, r *http.Request) error {
+		saved, design, err := find(r)
+		if err != nil {
+			return err
+		}
+		return writeSavedWorkbook(w, saved, design)
 	}
-	return writeSavedWorkbook(w, saved, design)
 }
 
 func writeSavedWorkbook(w http.ResponseWriter, saved store.Revision, design *budget.Design) error {

@@ -116,7 +116,8 @@ type Line struct {
 // Ledger is the table of loss items by load.
 type Ledger struct {
 	Caption string // "mW at 12 V in, 45 °C; shade: share of the column's loss"
-	Take    []Link
+	Take    []Link // files
+	Paper   Link   // the same for printing
 	Columns []Link // the loads
 	Lines   []LedgerLine
 	Foot    []LedgerLine
