@@ -23,6 +23,20 @@ var looks = []struct {
 		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "first"})
 		b.open(frostSheet + "/revisions/1")
 	}},
+	{"report", func(h *host, b *tab) {
+		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "on paper"})
+		b.open(frostSheet + "/revisions/1/report")
+	}},
+	{"sheet with a load profile", func(h *host, b *tab) {
+		b.open(frostSheet)
+		b.click(saying("add a row") + ` && e.id === 'add-profile'`)
+		b.wait(`document.getElementById('f-profile[0].load')`)
+		b.replace("profile[0].load", "50 %")
+		b.replace("profile[0].hours", "8")
+		b.says(".weights", "not a mean of percentages")
+		b.open(frostSheet)
+		b.wait(`document.querySelector('.weights h3')`)
+	}},
 	{"sheet with a change", func(h *host, b *tab) {
 		b.open(frostSheet)
 		b.replace("switch.rds_on", "14m")
