@@ -56,7 +56,7 @@ func TestMakeLink(t *testing.T) {
 func TestTakeAlongLeadsToTheLinks(t *testing.T) {
 	s := seeded(t)
 	take := s.open(200, "/designs/1/revisions/1").all(withClass("take"))
-	if len(take) != 1 || !strings.Contains(words(take[0]), "CSV · design.json · link for a colleague") {
+	if len(take) != 1 || !strings.Contains(words(take[0]), "CSV · workbook · design.json · paper · link for a colleague") {
 		t.Errorf("%d places to take along", len(take))
 	}
 	for _, path := range []string{"/designs/1", s.shared("")} {

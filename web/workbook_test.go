@@ -276,3 +276,25 @@ func TestWorkbookNegativeNumber(t *testing.T) {
 		t.Errorf("the ambient is %q", got)
 	}
 }
+
+// TestShareHasTheWorkbook compares part by part: the library lists the kinds of
+// files in an order of chance, which says nothing.
+func TestShareHasTheWorkbook(t *testing.T) {
+	s := seeded(t)
+	at := s.shared("")
+	own := s.want(200, "GET", "/designs/1/revisions/1/efficiency.xlsx", "").Body.Bytes()
+	got := s.want(200, "GET", at+"/efficiency.xlsx", "").Body.Bytes()
+	archive, err := zip.NewReader(bytes.NewReader(own), int64(len(own)))
+	if err != nil || len(archive.File) < 10 {
+		t.Fatal(len(archive.File), err)
+	}
+	for _, f := range archive.File {
+		if f.Name != "[Content_Types].xml" && partOf(t, got, f.Name) != partOf(t, own, f.Name) {
+			t.Errorf("%s differs from the revision's", f.Name)
+		}
+	}
+	s.page(404, s.ask("GET", "/share/1/efficiency.xlsx", ""), "no such link")
+	if p := s.open(200, at); strings.Contains(p.words(), "paper") {
+		t.Error("a link leads to a report, which it does not open")
+	}
+}
