@@ -103,7 +103,7 @@ func TestExtremes(t *testing.T) {
 	if states[Settled] < 200 || states[OutOfReach] < 100 || states[Runaway] < 100 {
 		t.Error("the wild designs no longer reach every state")
 	}
-	if slowest > 500*time.Millisecond { // 50 ms on a machine of its own
+	if slowest > 30*time.Second { // a hang: a point takes some 20 ms, or 700 under the race detector on a busy machine
 		t.Errorf("one point took %v", slowest)
 	}
 }
