@@ -115,7 +115,7 @@ func (b *tab) keepFirst() {
 	b.tabTo(saying("Keep as revision 1"))
 	b.press("Enter")
 	b.says(".notice", "Kept as revision 1.")
-	want(b, `document.activeElement.matches('.notice')`, true)
+	b.wait(`document.activeElement.matches('.notice')`)
 	b.tabTo(`e.matches('#kept summary')`)
 	b.press("Enter")
 	b.tabTo(`e.matches('#kept a')`)
