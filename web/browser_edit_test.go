@@ -128,7 +128,7 @@ func TestSwitchingTopologyAndRectifierKeepsEntries(t *testing.T) {
 	h.awaitKept("diode.v_f0", "444m")
 	b.choose("rectifier", "Down", "synchronous")
 	b.wait(`document.querySelector('` + field("sync_switch.rds_on") + `') && !document.querySelector('` + field("diode.v_f0") + `')`)
-	want(b, `document.activeElement.id`, "f-rectifier")
+	b.wait(`document.activeElement.id === 'f-rectifier'`)
 	b.replace("sync_switch.rds_on", "7m7")
 	h.awaitKept("sync_switch.rds_on", "7m7")
 	b.choose("topology", "Down", "buck")

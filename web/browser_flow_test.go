@@ -54,7 +54,7 @@ func (b *tab) changeSwitch() {
 	if got := evaluate[string](b, conduction); got == row {
 		b.t.Errorf("the ledger still says %s", got)
 	}
-	want(b, `document.activeElement.id`, "f-switch.rds_on")
+	b.wait(`document.activeElement.id === 'f-switch.rds_on'`)
 }
 
 // readCurve moves a chart's cursor by the arrows.
@@ -92,7 +92,7 @@ func (b *tab) correct() {
 	b.press("Enter")
 	b.wait(`document.title.startsWith('Error:')`)
 	b.drawn()
-	want(b, `document.activeElement.matches('.errors')`, true)
+	b.wait(`document.activeElement.matches('.errors')`)
 	want(b, `document.querySelector('.stale').textContent.includes('Last good answer')`, true)
 	b.tabTo(`e.matches('.errors a')`)
 	b.press("Enter")
@@ -187,7 +187,7 @@ func (b *tab) specify() {
 	b.press("Enter")
 	b.wait(`document.title.startsWith('Error:')`)
 	b.drawn()
-	want(b, `document.activeElement.matches('.errors')`, true)
+	b.wait(`document.activeElement.matches('.errors')`)
 	b.tabTo(`e.matches('.errors a')`)
 	b.press("Enter")
 	b.wait(`document.activeElement.id === 'f-input.max'`)
