@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"lossbook/budget/device"
+	"lossbook/budget/magnetic"
 )
 
 func switchConduction(s *situation, it *Item) float64 {
@@ -198,16 +199,65 @@ func windingDC(s *situation, it *Item) float64 {
 const windingShare = 0.01
 
 func windingAC(s *situation, it *Item) float64 {
-	sum, beyond := s.m.spectrum.Weigh(&s.harmonics, s.temperature[inductorHeat])
+	sum := s.weighedRipple()
 	if it != nil {
-		windingTerms(s, it, sum, beyond)
+		it.outside(s.windingBeyond() || s.m.linkage.Outside(max(math.Abs(s.flow.Min), math.Abs(s.flow.Max))))
+	}
+	if it.asked() {
+		windingTerms(s, it, sum)
 	}
 	return sum * s.rdcr
 }
 
-func windingTerms(s *situation, it *Item, sum, beyond float64) {
-	it.outside(beyond > windingShare*sum || s.m.linkage.Outside(max(math.Abs(s.flow.Min), math.Abs(s.flow.Max))))
-	ripple := s.ripple()
+// From these shares of the period on, the sum over the harmonics is taken from a table:
+// shorter ones lose digits there, in the sums themselves and where they are added up.
+const (
+	shortestRun  = 1.0 / 256 // of rise and fall
+	shortestFlow = 0.05      // of both together
+)
+
+// weighedRipple returns the sum over the harmonics of the inductor current, mean square
+// times the winding's factor, in A².
+func (s *situation) weighedRipple() float64 {
+	t, w := s.temperature[inductorHeat], s.flow.Triangle
+	if w.D1 >= shortestRun && w.D2 >= shortestRun && w.D1+w.D2 >= shortestFlow {
+		rise, possible := s.m.spectrum.Cosines(w.D1, t)
+		fall, both := rise, 0.0
+		if s.mode == DCM && possible {
+			fall, _ = s.m.spectrum.Cosines(w.D2, t)
+			both, possible = s.m.spectrum.Cosines(w.D1+w.D2, t)
+		}
+		if possible {
+			return w.Weighed(rise, fall, both)
+		}
+	}
+	square := s.harmonics()
+	sum, _ := s.m.spectrum.Weigh(&square, t)
+	return sum
+}
+
+// harmonics returns the mean square of each harmonic of the inductor current, in A².
+func (s *situation) harmonics() (square [magnetic.Harmonics]float64) {
+	s.flow.Harmonics(square[:])
+	return square
+}
+
+// windingBeyond tells whether the loss lies to more than a hundredth beyond the rows
+// of the winding's curve.
+func (s *situation) windingBeyond() bool {
+	if !s.m.spectrum.Ends() {
+		return false
+	}
+	square := s.harmonics()
+	sum, beyond := s.m.spectrum.Weigh(&square, s.temperature[inductorHeat])
+	return beyond > windingShare*sum
+}
+
+func windingTerms(s *situation, it *Item, sum float64) {
+	ripple := 0.0 // of the harmonics that the loss is summed over
+	for _, square := range s.harmonics() {
+		ripple += square
+	}
 	if ripple == 0 {
 		it.none("No current flows in the inductor.")
 		return
@@ -215,15 +265,6 @@ func windingTerms(s *situation, it *Item, sum, beyond float64) {
 	it.note("I_ac", math.Sqrt(ripple), "A")
 	it.note("F", sum/ripple, "")
 	it.note("R_dc", s.rdcr, "Ω")
-}
-
-// ripple is the mean square in A² of the harmonics that the winding's loss is summed
-// over.
-func (s *situation) ripple() (sum float64) {
-	for _, square := range s.harmonics {
-		sum += square
-	}
-	return sum
 }
 
 func coreLoss(s *situation, it *Item) float64 {

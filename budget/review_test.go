@@ -146,13 +146,14 @@ func TestWindingShare(t *testing.T) {
 	m, b := solved(t, d, easy)
 	s := m.situationOf(b)
 	total := 0.0
-	for _, square := range s.harmonics {
+	harmonics := s.harmonics()
+	for _, square := range harmonics {
 		total += square
 	}
 	marked := false
 	beyond := 0.0
-	for n := len(s.harmonics); n > 1; n-- {
-		beyond += s.harmonics[n-1]
+	for n := len(harmonics); n > 1; n-- {
+		beyond += harmonics[n-1]
 		d.Inductor.ACCurve = Curve{{1e3, 2}, {(float64(n) - 0.5) * 300e3, 2}}
 		want := Level("")
 		if beyond > 0.01*total {

@@ -36,7 +36,6 @@ type situation struct {
 	reverse   device.Reverse
 	inputAC   float64 // A², what the input capacitor carries
 	outputAC  float64
-	harmonics [magnetic.Harmonics]float64
 
 	heat  [3]float64 // W in switch, rectifier, inductor
 	stage float64    // W that the stage's own balance carries
@@ -123,7 +122,6 @@ func (s *situation) carry(stageLoss float64) fault {
 	}
 	s.inputAC = s.of(m.topology.InputSees).RippleSquare()
 	s.outputAC = s.of(m.topology.OutputSees).RippleSquare()
-	s.flow.Harmonics(s.harmonics[:])
 	return s.commutate()
 }
 

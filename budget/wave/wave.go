@@ -78,3 +78,17 @@ func (w Triangle) Harmonics(square []float64) {
 		s2, c2 = s2*cos2+c2*sin2, c2*cos2-s2*sin2
 	}
 }
+
+// Weighed returns the sum of the mean squares of the harmonics in A², each times a
+// weight w_n, from sums over these weights alone:
+//
+//	Σ I_n²·w_n = Δ²/(4π⁴)·[C(D1)/D1² + C(D2)/D2² + (C(D1) + C(D2) − C(D1 + D2))/(D1·D2)]
+//	C(d) = Σ w_n/n⁴·(1 − cos 2πnd)
+//
+// which is the square in Harmonics multiplied out; rise, fall and both are C at D1, D2
+// and their sum. Where D1 + D2 is small the bracket loses digits.
+func (w Triangle) Weighed(rise, fall, both float64) float64 {
+	swing := w.Swing()
+	bracket := rise/(w.D1*w.D1) + fall/(w.D2*w.D2) + (rise+fall-both)/(w.D1*w.D2)
+	return swing * swing / (4 * math.Pi * math.Pi * math.Pi * math.Pi) * bracket
+}

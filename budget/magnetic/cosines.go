@@ -1,0 +1,83 @@
+package magnetic
+
+import "math"
+
+// A triangle's harmonics are differences of cosines, so that the sum over them all of
+// loss × factor is a function of two numbers, a share of the period and the
+// temperature, and can be kept as a table like the factors themselves.
+
+const patchCount = 256 // over the shares 0…½; the fiftieth harmonic turns by 0.6 rad across one
+
+// patch holds, for each power of s = −1…1 along the share, a polynomial along the
+// temperature.
+type patch [order]polynomial
+
+// Cosines returns
+//
+//	C(d) = Σ F(n·f)/n⁴·(1 − cos 2π·n·d)      n = 1 … 50
+//
+// of the share d of the period (0…2; it repeats with 1) at t (°C): the sum from which
+// the loss of a current made of straight lines follows (wave.Triangle.Weighed), since
+// the n-th coefficient of a corner is 1/n². It is told to 2e-13 of its largest value over
+// d; near whole periods, where it vanishes, that is few digits of itself. possible is
+// false beyond the table's temperatures; the harmonics have then to be weighed one by
+// one (Weigh).
+func (s *Spectrum) Cosines(d, t float64) (sum float64, possible bool) {
+	p, x := s.place(t)
+	if p == nil || !(d >= 0 && d <= 2) {
+		return 0, false
+	}
+	if d > 1 {
+		d--
+	}
+	if d > 0.5 {
+		d = 1 - d
+	}
+	at := d * (2 * patchCount)
+	i := min(int(at), patchCount-1)
+	q := p.patches[i].Load()
+	if q == nil {
+		q = p.newPatch(i)
+	}
+	var along polynomial
+	for j := range q {
+		along[j] = q[j].at(x)
+	}
+	return along.at(2*(at-float64(i)) - 1), true
+}
+
+// newPatch works out a patch for the first to ask, as newPiece does a piece.
+func (p *piece) newPatch(i int) *patch {
+	var values [order]polynomial // by node of the temperature, along the share
+	for j, y := range nodes {
+		weights := cosineWeights((float64(i) + (y+1)/2) / (2 * patchCount))
+		for k := range values {
+			for n, w := range weights {
+				values[k][j] += w * p.nodes[k][n]
+			}
+		}
+	}
+	q := new(patch)
+	for k := range values {
+		values[k] = through(&values[k])
+	}
+	for j := range q {
+		var along polynomial
+		for k := range along {
+			along[k] = values[k][j]
+		}
+		q[j] = through(&along)
+	}
+	p.patches[i].CompareAndSwap(nil, q)
+	return p.patches[i].Load()
+}
+
+// cosineWeights returns (1 − cos 2π·n·d)/n⁴ as 2·sin²(π·n·d)/n⁴.
+func cosineWeights(d float64) (w [Harmonics]float64) {
+	for i := range w {
+		n := float64(i + 1)
+		sin := math.Sin(math.Pi * n * d)
+		w[i] = 2 * sin * sin / (n * n * n * n)
+	}
+	return w
+}
