@@ -17,7 +17,8 @@ const (
 type entry struct {
 	part, kind string
 	heats      heat
-	stage      bool // the stage's own balance carries it
+	stage      bool     // the stage's own balance carries it
+	follows    property // of its part's temperature, and in proportion
 	power      func(s *situation, it *Item) float64
 	method     method
 }
@@ -25,25 +26,25 @@ type entry struct {
 // fixedEntries is the ledger without the series resistances, in its order. A new
 // loss is one function in the package of its part and one row here.
 var fixedEntries = []entry{
-	{"switch", "conduction", switchHeat, true, switchConduction, how("I_sw^2·R_DS", byRMS)},
-	{"switch", "turn_on", switchHeat, true, turnOn, how("½·V_b·I_1·(t_ri + t_fv)·f", byGateCharge)},
-	{"switch", "turn_off", switchHeat, true, turnOff, how("½·V_b·I_2·t_fi·f + max(0, ½·V_b·I_2·t_rv − E_b)·f", byGateCharge+"; what the junctions store meanwhile is not lost yet")},
-	{"switch", "output_charge", switchHeat, true, outputCharge, how("E_x·f", byJunctions)},
-	{"switch", "recovery", switchHeat, true, switchRecovery, how("(V_b·(I_min·t_a + Q) − V_b·Q_b/3)·f", byTriangle)},
-	{"rectifier", "conduction", rectifierHeat, true, rectifierConduction, how("V_d·I_mean + r_d·I_re^2", "forward characteristic as a straight line: common practice")},
-	{"rectifier", "dead_time", rectifierHeat, true, deadTime, how("(|I_min|·V_1·t_on + I_2·V_2·t_off)·f", "forward line of the body diode: common practice")},
-	{"rectifier", "recovery", rectifierHeat, true, rectifierRecovery, how("V_b·Q_b/3·f", byTriangle)},
-	{"rectifier", "leakage", rectifierHeat, true, leakage, how("I_R·g/V_R·(d_1·V_b^2 + d_3·(V_b − V_rest)^2)", byLeakage)},
-	{"inductor", "winding_dc", inductorHeat, true, windingDC, how("I_L^2·R_dc", byRMS)},
-	{"inductor", "winding_ac", inductorHeat, true, windingAC, how("I_ac^2·F·R_dc", "P. L. Dowell, Effects of eddy currents in transformer windings, Proc. IEE 113 (1966), harmonic by harmonic")},
-	{"inductor", "core", inductorHeat, true, coreLoss, how("ct·V_e·k_i·ΔB^β·f^α·(d_1^(1 − α) + d_2^(1 − α))", bySteinmetz)},
-	{"input_capacitor", "esr", noHeat, false, inputESR, how("I_C^2·R_ESR", byRMS)},
-	{"output_capacitor", "esr", noHeat, true, outputESR, how("I_C^2·R_ESR", byRMS)},
-	{"snubber", "rc", noHeat, true, snubberLoss, how("C_sn·V_b^2·f", "½·C·V² is lost in the resistor at each charge and at each discharge")},
-	{"drive", "gate", noHeat, false, gateLoss, how("Q_g·(V_dr − V_off)·f", byGateDrive)},
-	{"drive", "regulator", noHeat, false, regulatorLoss, how("Q_g·f·max(V_s − (V_dr − V_off), 0)", "a linear regulator drops what the gates don't need")},
-	{"controller", "supply", noHeat, false, supplyLoss, how("I_q·V_s", "supply current at supply voltage")},
-	{"controller", "fixed", noHeat, false, fixedLoss, how("P_fix", "as entered")},
+	{"switch", "conduction", switchHeat, true, ofChannel, switchConduction, how("I_sw^2·R_DS", byRMS)},
+	{"switch", "turn_on", switchHeat, true, steady, turnOn, how("½·V_b·I_1·(t_ri + t_fv)·f", byGateCharge)},
+	{"switch", "turn_off", switchHeat, true, steady, turnOff, how("½·V_b·I_2·t_fi·f + max(0, ½·V_b·I_2·t_rv − E_b)·f", byGateCharge+"; what the junctions store meanwhile is not lost yet")},
+	{"switch", "output_charge", switchHeat, true, steady, outputCharge, how("E_x·f", byJunctions)},
+	{"switch", "recovery", switchHeat, true, steady, switchRecovery, how("(V_b·(I_min·t_a + Q) − V_b·Q_b/3)·f", byTriangle)},
+	{"rectifier", "conduction", rectifierHeat, true, ofRectifier, rectifierConduction, how("V_d·I_mean + r_d·I_re^2", "forward characteristic as a straight line: common practice")},
+	{"rectifier", "dead_time", rectifierHeat, true, steady, deadTime, how("(|I_min|·V_1·t_on + I_2·V_2·t_off)·f", "forward line of the body diode: common practice")},
+	{"rectifier", "recovery", rectifierHeat, true, steady, rectifierRecovery, how("V_b·Q_b/3·f", byTriangle)},
+	{"rectifier", "leakage", rectifierHeat, true, ofLeakage, leakage, how("I_R·g/V_R·(d_1·V_b^2 + d_3·(V_b − V_rest)^2)", byLeakage)},
+	{"inductor", "winding_dc", inductorHeat, true, ofCopper, windingDC, how("I_L^2·R_dc", byRMS)},
+	{"inductor", "winding_ac", inductorHeat, true, ofCopper, windingAC, how("I_ac^2·F·R_dc", "P. L. Dowell, Effects of eddy currents in transformer windings, Proc. IEE 113 (1966), harmonic by harmonic")},
+	{"inductor", "core", inductorHeat, true, ofCore, coreLoss, how("ct·V_e·k_i·ΔB^β·f^α·(d_1^(1 − α) + d_2^(1 − α))", bySteinmetz)},
+	{"input_capacitor", "esr", noHeat, false, steady, inputESR, how("I_C^2·R_ESR", byRMS)},
+	{"output_capacitor", "esr", noHeat, true, steady, outputESR, how("I_C^2·R_ESR", byRMS)},
+	{"snubber", "rc", noHeat, true, steady, snubberLoss, how("C_sn·V_b^2·f", "½·C·V² is lost in the resistor at each charge and at each discharge")},
+	{"drive", "gate", noHeat, false, steady, gateLoss, how("Q_g·(V_dr − V_off)·f", byGateDrive)},
+	{"drive", "regulator", noHeat, false, steady, regulatorLoss, how("Q_g·f·max(V_s − (V_dr − V_off), 0)", "a linear regulator drops what the gates don't need")},
+	{"controller", "supply", noHeat, false, steady, supplyLoss, how("I_q·V_s", "supply current at supply voltage")},
+	{"controller", "fixed", noHeat, false, steady, fixedLoss, how("P_fix", "as entered")},
 }
 
 // Where the formulas come from.

@@ -165,7 +165,7 @@ func TestImpossible(t *testing.T) {
 // TestErrorByTheAnswer asks that a step is measured by the loss it leads to, not by what
 // follows from the guess, which far from any solution is far larger.
 func TestErrorByTheAnswer(t *testing.T) {
-	p := problem{s: &situation{guess: 1e13, stage: 1.7e23, loss: 1.7e23}, held: true}
+	p := problem{s: &situation{guess: 1e13, sums: sums{stage: 1.7e23, loss: 1.7e23}}, held: true}
 	if e := p.error(unknowns{5e12}); e != 0.5 {
 		t.Errorf("5e12 W beside 1e13 W count as %g, want 0.5", e)
 	}

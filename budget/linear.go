@@ -10,38 +10,6 @@ func identity() matrix {
 	return matrix{{1, 0, 0, 0}, {0, 1, 0, 0}, {0, 0, 1, 0}, {0, 0, 0, 1}}
 }
 
-func (a *matrix) times(v unknowns) (w unknowns) {
-	for i := range w {
-		for j := range v {
-			w[i] += a[i][j] * v[j]
-		}
-	}
-	return w
-}
-
-// learn updates an approximate inverse of the negative slope of the residual by a
-// step and what it changed: Broyden's first method in the form of Sherman and
-// Morrison. A step that tells nothing leaves it as it is.
-func (a *matrix) learn(step, change unknowns) {
-	moved := a.times(change).scaled(-1) // what the matrix would have expected of the step
-	var row unknowns
-	for j := range row {
-		for i := range step {
-			row[j] += step[i] * a[i][j]
-		}
-	}
-	denominator := step.dot(moved)
-	if denominator == 0 {
-		return
-	}
-	miss := step.minus(moved)
-	for i := range miss {
-		for j := range row {
-			a[i][j] += miss[i] * row[j] / denominator
-		}
-	}
-}
-
 // solve returns x of (A + I/pace)·x = r by elimination with pivoting. regular is
 // false when a pivot vanishes.
 func (a matrix) solve(r unknowns, pace float64) (x unknowns, regular bool) {

@@ -368,7 +368,7 @@ func (m *Model) seriesEntries() []entry {
 	var rows []entry
 	for i, r := range m.design.Series {
 		at, path := branches[r.Location], fmt.Sprintf("series_resistances[%d].resistance", i)
-		rows = append(rows, entry{layoutPart, r.Name, noHeat, true, func(s *situation, it *Item) float64 {
+		rows = append(rows, entry{layoutPart, r.Name, noHeat, true, steady, func(s *situation, it *Item) float64 {
 			square := s.squareAt(r.Location)
 			it.given("R", path, r.Resistance.V)
 			it.note(at.current, math.Sqrt(square), "A")

@@ -28,18 +28,25 @@ type situation struct {
 	rdsOutside              bool
 	rdsRectifierOutside     bool
 
-	flow      stage.Flow
-	sw, re    wave.Share
-	inductor  wave.Share
-	on, off   device.Edge
-	slope     float64 // A/s, of the recovering current
-	reverse   device.Reverse
-	inputAC   float64 // A², what the input capacitor carries
-	outputAC  float64
+	flow     stage.Flow
+	sw, re   wave.Share
+	inductor wave.Share
+	on, off  device.Edge
+	slope    float64 // A/s, of the recovering current
+	reverse  device.Reverse
+	inputAC  float64 // A², what the input capacitor carries
+	outputAC float64
 
-	heat  [3]float64 // W in switch, rectifier, inductor
-	stage float64    // W that the stage's own balance carries
-	loss  float64    // W, all items
+	rate [properties]float64 // 1/K, of the properties that losses follow
+	sums
+}
+
+// sums of the items.
+type sums struct {
+	heat    [3]float64 // W in switch, rectifier, inductor
+	heating [3]float64 // W/K, by which these follow the part's own temperature, nearly
+	stage   float64    // W that the stage's own balance carries
+	loss    float64    // W, all items
 }
 
 // fault says why an evaluation has no answer.
@@ -93,6 +100,7 @@ func (s *situation) warm(temperature [3]float64) fault {
 		return tooCold // the straight line of copper's resistance has met zero
 	}
 	s.coreFactor = m.core.Factor(temperature[inductorHeat])
+	s.rates()
 	return sound
 }
 
@@ -155,13 +163,17 @@ func (s *situation) commutate() fault {
 
 // account adds up the items at the state found.
 func (s *situation) account() fault {
-	s.heat, s.stage, s.loss = [3]float64{}, 0, 0
+	s.sums = sums{}
+	if !s.m.sync {
+		s.rate[ofRectifier] = s.dropRate()
+	}
 	for i := range s.m.entries {
 		e := &s.m.entries[i]
 		p := e.power(s, nil)
 		s.loss += p
 		if e.heats != noHeat {
 			s.heat[e.heats] += p
+			s.heating[e.heats] += p * s.rate[e.follows]
 		}
 		if e.stage {
 			s.stage += p

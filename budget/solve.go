@@ -100,29 +100,32 @@ func (p *problem) solve() answer {
 	return p.careful()
 }
 
-// quick starts cold with plain substitution and corrects the inverse of I − G' after
-// each step by C. G. Broyden's rank-one update (Math. Comp. 19, 1965). It gives up,
-// untrusted, when a step has no answer or makes things worse, and it accepts only a
-// fixed point that plain substitution would hold on to, not an unstable one beyond.
+// quick starts cold and makes Newton's steps with a slope that it partly knows and
+// partly learns on the way (response). It gives up, untrusted, when a step has no answer or
+// makes things worse, and it accepts only a fixed point that plain substitution would
+// hold on to, not an unstable one beyond.
 func (p *problem) quick() (answer, bool) {
 	var x unknowns
 	r, wrong := p.at(x)
 	if wrong != sound {
 		return answer{}, false
 	}
-	inverse := identity()
+	l := p.guess()
 	for range fastSteps {
-		step := inverse.times(r)
-		if e := p.error(step); e <= target {
-			return answer{settled: true, iterations: p.evals, residual: e}, p.stable(x, r)
+		step, regular := p.newton(&l, r)
+		if !regular {
+			return answer{}, false
 		}
-		next := x.plus(step)
-		after, wrong := p.at(next)
+		if e := p.error(step); e <= target {
+			return answer{settled: true, iterations: p.evals, residual: e}, p.holds(&l, x) || p.stable(x, r)
+		}
+		before := p.s.sums
+		after, wrong := p.at(x.plus(step))
 		if wrong != sound || after.norm() > 2*r.norm() {
 			return answer{}, false
 		}
-		inverse.learn(step, after.minus(r))
-		x, r = next, after
+		p.learn(&l, &before, step)
+		x, r = x.plus(step), after
 	}
 	return answer{}, false
 }

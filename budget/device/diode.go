@@ -36,6 +36,10 @@ func (l Leakage) Growth(tj float64) float64 {
 	return math.Exp2((tj - l.Temperature) / l.Doubling)
 }
 
+// Rate returns the relative slope of the leakage over temperature in 1/K, ln 2 over
+// the kelvin in which it doubles.
+func (l Leakage) Rate() float64 { return math.Ln2 / l.Doubling }
+
 // Loss returns the mean power in W of the leakage: the rectifier blocks on (V)
 // while the switch conducts, the share d1 of the period, and rest (V) during the
 // share d3 in which nothing does,

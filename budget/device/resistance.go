@@ -41,6 +41,18 @@ func (r Resistance) At(tj float64) (ohm float64, outside bool) {
 	return r.cold * math.Exp(r.exponent*math.Log((tj+kelvin)/cold)), false
 }
 
+// Rate returns the relative slope of At over the junction temperature tj (°C) in 1/K: m
+// over the absolute temperature, or the slope of the curve by a difference of 0.01 K.
+func (r Resistance) Rate(tj float64) float64 {
+	if r.curve == nil {
+		return r.exponent / (tj + kelvin)
+	}
+	const h = 0.01
+	low, _ := r.curve.At(tj - h/2)
+	high, _ := r.curve.At(tj + h/2)
+	return (high - low) / (h * low)
+}
+
 // Most returns the largest resistance in Ω between two junction temperatures (°C), or
 // a bound above it.
 func (r Resistance) Most(from, to float64) float64 {

@@ -67,5 +67,15 @@ func (c Core) Loss(swing, d1, d2, factor float64) float64 {
 // can fall below zero, which no core does; the caller must not let that stand.
 func (c Core) Factor(t float64) float64 { return c.ct0 - c.ct1*t + c.ct2*t*t }
 
+// Rate returns the relative slope of Factor over t (°C) in 1/K, 0 where the factor is
+// 0.
+func (c Core) Rate(t float64) float64 {
+	f := c.Factor(t)
+	if f == 0 {
+		return 0
+	}
+	return (2*c.ct2*t - c.ct1) / f
+}
+
 // Known reports whether the core has a loss at all.
 func (c Core) Known() bool { return c.known }

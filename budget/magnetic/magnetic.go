@@ -23,3 +23,6 @@ const copperSlope = 0.00393
 // CopperFactor returns the resistance of copper at t (°C) over that at 20 °C:
 // 1 + 0.00393·(T − 20). Source: IEC 60028.
 func CopperFactor(t float64) float64 { return 1 + copperSlope*(t-20) }
+
+// CopperRate returns the relative slope of CopperFactor over t (°C) in 1/K.
+func CopperRate(t float64) float64 { return copperSlope / CopperFactor(t) }
