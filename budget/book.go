@@ -1,6 +1,9 @@
 package budget
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // reset empties a budget for a new point; its items keep their room.
 func (b *Budget) reset(m *Model, p Point) {
@@ -32,10 +35,10 @@ func (b *Budget) book(s *situation, a answer) {
 
 func (b *Budget) bookItems(s *situation) {
 	b.Loss = 0
+	b.Items = slices.Grow(b.Items, len(s.m.entries))[:len(s.m.entries)]
 	for i := range s.m.entries {
-		e := &s.m.entries[i]
-		b.Items = append(b.Items, Item{Part: e.part, Kind: e.kind})
-		it := &b.Items[i]
+		e, it := &s.m.entries[i], &b.Items[i]
+		it.Part, it.Kind, it.Outside, it.step = e.part, e.kind, false, nil
 		it.Power = e.power(s, it)
 		b.Loss += it.Power
 	}

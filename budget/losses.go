@@ -49,7 +49,10 @@ func outputCharge(s *situation, it *Item) float64 {
 	if s.mode == DCM {
 		return ringingCharge(s, it)
 	}
-	energy := device.TurnOnEnergy(s.m.switchCharge, s.m.rectifierCharge, s.frame.blocking, s.turnOnVoltage())
+	energy := s.frame.stored
+	if s.flow.Min < 0 {
+		energy = device.TurnOnEnergy(s.m.switchCharge, s.m.rectifierCharge, s.frame.blocking, s.turnOnVoltage())
+	}
 	it.note("E_x", energy, "J")
 	it.given("f", "frequency", s.m.frequency)
 	return energy * s.m.frequency
@@ -347,19 +350,21 @@ func fixedLoss(s *situation, it *Item) float64 {
 	return s.frame.fixed
 }
 
-// branch is where a series resistance can lie: the name of the current there, and the
-// formula with it.
+// branch is where a series resistance can lie: the name of the current there, the
+// formula with it, and its mean square in A². What the capacitors carry does not flow
+// through input and output.
 type branch struct {
 	current string
 	method  method
+	square  func(s *situation) float64
 }
 
 var branches = map[string]branch{
-	"input":     {"I_s", how("R·I_s^2", byRMS+"; the mean, since the input capacitor carries the rest")},
-	"output":    {"I_out", how("R·I_out^2", byRMS+"; the mean, since the output capacitor carries the rest")},
-	"switch":    {"I_sw", how("R·I_sw^2", byRMS)},
-	"rectifier": {"I_re", how("R·I_re^2", byRMS)},
-	"inductor":  {"I_rms", how("R·I_rms^2", byRMS)},
+	"input":     {"I_s", how("R·I_s^2", byRMS+"; the mean, since the input capacitor carries the rest"), func(s *situation) float64 { return s.is * s.is }},
+	"output":    {"I_out", how("R·I_out^2", byRMS+"; the mean, since the output capacitor carries the rest"), func(s *situation) float64 { return s.frame.Iout * s.frame.Iout }},
+	"switch":    {"I_sw", how("R·I_sw^2", byRMS), func(s *situation) float64 { return s.sw.MeanSquare() }},
+	"rectifier": {"I_re", how("R·I_re^2", byRMS), func(s *situation) float64 { return s.re.MeanSquare() }},
+	"inductor":  {"I_rms", how("R·I_rms^2", byRMS), func(s *situation) float64 { return s.inductor.MeanSquare() }},
 }
 
 // seriesEntries makes one row of each series resistance: R·I² of the place it lies
@@ -369,27 +374,11 @@ func (m *Model) seriesEntries() []entry {
 	for i, r := range m.design.Series {
 		at, path := branches[r.Location], fmt.Sprintf("series_resistances[%d].resistance", i)
 		rows = append(rows, entry{layoutPart, r.Name, noHeat, true, steady, func(s *situation, it *Item) float64 {
-			square := s.squareAt(r.Location)
+			square := at.square(s)
 			it.given("R", path, r.Resistance.V)
 			it.note(at.current, math.Sqrt(square), "A")
 			return square * r.Resistance.V
 		}, at.method})
 	}
 	return rows
-}
-
-// squareAt returns the mean square of the current at a place of the stage, in A².
-// What the capacitors carry does not flow through input and output.
-func (s *situation) squareAt(location string) float64 {
-	switch location {
-	case "input":
-		return s.is * s.is
-	case "output":
-		return s.frame.Iout * s.frame.Iout
-	case "switch":
-		return s.sw.MeanSquare()
-	case "rectifier":
-		return s.re.MeanSquare()
-	}
-	return s.inductor.MeanSquare()
 }

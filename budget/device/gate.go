@@ -20,7 +20,7 @@ type Edge struct{ Current, Voltage, Plateau float64 }
 // plateau returns plateau voltage and threshold-to-plateau charge at the current
 // i (A, ≥ 0): Vpl(I) = Vth + (Vpl − Vth)·I/I_pl, the charge scaled likewise, as
 // the straight transfer characteristic through the stated point has it.
-func (g Gate) plateau(i float64) (volt, charge float64) {
+func (g *Gate) plateau(i float64) (volt, charge float64) {
 	if g.PlateauCurrent == 0 {
 		return g.Plateau, g.ThresholdCharge
 	}
@@ -29,7 +29,7 @@ func (g Gate) plateau(i float64) (volt, charge float64) {
 }
 
 // PlateauAt returns the plateau in V at the current i (A, ≥ 0).
-func (g Gate) PlateauAt(i float64) float64 {
+func (g *Gate) PlateauAt(i float64) float64 {
 	v, _ := g.plateau(i)
 	return v
 }
@@ -41,7 +41,7 @@ func (g Gate) PlateauAt(i float64) float64 {
 // possible is false when the plateau reaches the drive voltage. Source: L. Balogh,
 // Design and Application Guide for High Speed MOSFET Gate Drive Circuits, TI
 // SLUA618 (from memory).
-func (g Gate) TurnOn(i float64) (e Edge, possible bool) {
+func (g *Gate) TurnOn(i float64) (e Edge, possible bool) {
 	v, q := g.plateau(i)
 	if !(v < g.On) {
 		return Edge{Plateau: v}, false
@@ -59,7 +59,7 @@ func (g Gate) TurnOn(i float64) (e Edge, possible bool) {
 //
 // possible is false when the drive can't have carried the current: the plateau
 // reaches its voltage. Source: as TurnOn.
-func (g Gate) TurnOff(i float64) (e Edge, possible bool) {
+func (g *Gate) TurnOff(i float64) (e Edge, possible bool) {
 	v, q := g.plateau(i)
 	if !(v < g.On) {
 		return Edge{Plateau: v}, false
@@ -78,7 +78,7 @@ func (g Gate) TurnOff(i float64) (e Edge, possible bool) {
 //
 // Q_gs2·R_on and L_s must not both be 0. Source: the transition above, its time
 // taken at the stated plateau.
-func (g Gate) Slope(i float64) float64 {
+func (g *Gate) Slope(i float64) float64 {
 	return i * (g.On - (g.Threshold+g.Plateau)/2) / (g.ThresholdCharge*g.ResistanceOn + g.SourceInductor*i)
 }
 

@@ -35,7 +35,7 @@ func (s Share) MeanSquare() float64 {
 // rather than less than nothing.
 func (s Share) RippleSquare() float64 {
 	mid, swing := (s.Min+s.Max)/2, s.Max-s.Min
-	return math.Max(0, s.D*(1-s.D)*mid*mid+s.D*swing*swing/12)
+	return max(0, s.D*(1-s.D)*mid*mid+s.D*swing*swing/12)
 }
 
 // Rise returns the current during D1, that of the switch.
