@@ -29,8 +29,22 @@ func (b *Budget) book(s *situation, a answer) {
 	}
 	is := (m.vout*f.io + s.stage) / f.Vin
 	b.Iin = is + (m.fedFromInput(f)+inputESR(s, nil))/f.Vin
-	b.Iterations, b.Residual = a.iterations, a.residual
+	b.bookErrors(s, a)
 	b.guess = s.guess
+}
+
+// bookErrors tells how far the solution may still be: by the step that the solver saw
+// no need to make. Each of its watts, of the stage's loss or of a part's heat, moves
+// the whole loss by no more than itself where substitution settles.
+func (b *Budget) bookErrors(s *situation, a answer) {
+	b.Iterations, b.Residual = a.iterations, a.residual
+	var kelvin [3]float64
+	for i := range kelvin {
+		kelvin[i] = math.Abs(a.step[i+1]) * (s.m.theta[i] + s.m.enclosure)
+		b.LossError += math.Abs(a.step[i+1])
+	}
+	b.LossError += math.Abs(a.step[0])
+	b.HeatErrors = Temperatures{kelvin[0], kelvin[1], kelvin[2]}
 }
 
 func (b *Budget) bookItems(s *situation) {

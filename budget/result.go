@@ -70,8 +70,10 @@ type Budget struct {
 	OutputCapRMS  float64
 	Temperatures  Temperatures
 	Items         []Item
-	Iterations    int     // evaluations of all losses it took
-	Residual      float64 // how far the answer may still be: the larger share of the loss or of a temperature in kelvin
+	Iterations    int          // evaluations of all losses it took
+	Residual      float64      // how far the answer may still be: the larger share of the loss or of a temperature in kelvin
+	LossError     float64      // the same in W
+	HeatErrors    Temperatures // the same of each temperature, in K
 
 	guess float64 // W of stage loss, from which the whole situation follows again
 }

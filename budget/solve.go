@@ -11,10 +11,11 @@ type unknowns [4]float64
 // answer is how an attempt ended.
 type answer struct {
 	settled    bool
-	wrong      fault   // of an attempt without solution: what its last iterate lacked
-	hot        bool    // it left 1000 °C behind, or any number
-	iterations int     // evaluations
-	residual   float64 // how far the answer may be: relative to the loss, or to a temperature in kelvin
+	wrong      fault    // of an attempt without solution: what its last iterate lacked
+	hot        bool     // it left 1000 °C behind, or any number
+	iterations int      // evaluations
+	residual   float64  // how far the answer may be: relative to the loss, or to a temperature in kelvin
+	step       unknowns // W, that was still to be made
 }
 
 // problem is the fixed-point problem of one mode at one point: find x = g(x).
@@ -117,7 +118,7 @@ func (p *problem) quick() (answer, bool) {
 			return answer{}, false
 		}
 		if e := p.error(step); e <= target {
-			return answer{settled: true, iterations: p.evals, residual: e}, p.holds(&l, x) || p.stable(x, r)
+			return answer{settled: true, iterations: p.evals, residual: e, step: step}, p.holds(&l, x) || p.stable(x, r)
 		}
 		before := p.s.sums
 		after, wrong := p.at(x.plus(step))
@@ -172,9 +173,9 @@ func (p *problem) careful() answer {
 		slope := p.slope(x, r)
 		newton, regular := slope.solve(r, math.Inf(1))
 		if e := p.error(newton); regular && e <= target {
-			return p.accept(x, e)
+			return p.accept(x, newton, e)
 		} else if regular && e <= tolerance && (best.settled && e >= best.residual/2) {
-			return p.accept(x, e)
+			return p.accept(x, newton, e)
 		} else if regular && e <= tolerance {
 			best = answer{settled: true, residual: e}
 		}
@@ -191,9 +192,9 @@ func (p *problem) careful() answer {
 	return answer{iterations: p.evals}
 }
 
-func (p *problem) accept(x unknowns, e float64) answer {
+func (p *problem) accept(x, step unknowns, e float64) answer {
 	p.at(x)
-	return answer{settled: true, iterations: p.evals, residual: e}
+	return answer{settled: true, iterations: p.evals, residual: e, step: step}
 }
 
 // leftBehind tells whether a part is far above any solution that counts and still
