@@ -39,6 +39,16 @@ type Figures struct {
 	OutputCapacitorRMS float64      `json:"output_capacitor_rms"`
 	Temperatures       Temperatures `json:"temperatures"`
 	Items              []Item       `json:"items"`
+	Solver             *Solver      `json:"solver,omitempty"` // a revision of an early model kept none
+}
+
+// Solver is what the search for the point took, and how far its answer may still be
+// from the solution.
+type Solver struct {
+	Evaluations       int          `json:"evaluations"`
+	Error             float64      `json:"error"`              // the larger share of the loss or of a temperature in kelvin
+	LossError         float64      `json:"loss_error"`         // W
+	TemperatureErrors Temperatures `json:"temperature_errors"` // K
 }
 
 // Current describes the inductor's current, in A.
@@ -144,6 +154,7 @@ func figuresOf(b *budget.Budget) *Figures {
 		InputCapacitorRMS: b.InputCapRMS, OutputCapacitorRMS: b.OutputCapRMS,
 		Temperatures: Temperatures(b.Temperatures),
 		Items:        make([]Item, len(b.Items)),
+		Solver:       &Solver{b.Iterations, b.Residual, b.LossError, Temperatures(b.HeatErrors)},
 	}
 	for i, it := range b.Items {
 		f.Items[i] = Item{Part: it.Part, Kind: it.Kind, Power: it.Power, Outside: it.Outside}

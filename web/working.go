@@ -38,7 +38,7 @@ func (p *picture) working(base string) *view.Working {
 // the one shown, as an older model's may be, it says so instead.
 func (p *picture) explain(w *view.Working, q *Point, f figure) {
 	shown := f.shown(q.Figures)
-	found, known := f.workedOut(p.design, q)
+	found, b, known := f.workedOut(p.design, q)
 	switch kept := "Kept as " + showing(shown, f.unit) + ". Model " + budget.ModelVersion + ", which runs now, "; {
 	case !known:
 		w.Unlike = kept + "has no working of it."
@@ -46,18 +46,20 @@ func (p *picture) explain(w *view.Working, q *Point, f figure) {
 		w.Unlike = kept + "gives " + showing(found.Value(), f.unit) + ", so its working would not be that of the figure kept."
 	default:
 		fillWorking(w, p.design, found)
+		w.Solved = f.solved(b)
 	}
 }
 
 // workedOut asks the model how the figure came about at a point.
-func (f figure) workedOut(d *budget.Design, q *Point) (budget.Working, bool) {
+func (f figure) workedOut(d *budget.Design, q *Point) (w budget.Working, b *budget.Budget, known bool) {
 	model, err := budget.Prepare(d)
 	if err != nil {
-		return budget.Working{}, false
+		return w, nil, false
 	}
-	var b budget.Budget
-	model.At(budget.Point{Vin: q.Vin, Iout: q.Iout, Ambient: q.Ambient}, &b)
-	return f.ask(model, &b)
+	b = new(budget.Budget)
+	model.At(budget.Point{Vin: q.Vin, Iout: q.Iout, Ambient: q.Ambient}, b)
+	w, known = f.ask(model, b)
+	return w, b, known
 }
 
 func fillWorking(w *view.Working, d *budget.Design, found budget.Working) {

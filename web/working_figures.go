@@ -16,6 +16,7 @@ type figure struct {
 	unit  quantity.Unit
 	shown func(f *Figures) float64
 	ask   func(m *budget.Model, b *budget.Budget) (budget.Working, bool)
+	left  func(b *budget.Budget) float64 // how far it may be from the solution, of a figure that a point is solved for
 }
 
 // The rows that are no items are named by these, before a point.
@@ -74,22 +75,42 @@ func subtotalFigure(name string) (figure, bool) {
 }
 
 var budgetFigures = map[string]figure{
-	"loss":       {"Loss", "W", func(f *Figures) float64 { return f.Loss }, (*budget.Model).Loss},
-	"efficiency": {"Efficiency", "", func(f *Figures) float64 { return f.Efficiency }, (*budget.Model).EfficiencyWorking},
+	"loss": {"Loss", "W", func(f *Figures) float64 { return f.Loss }, (*budget.Model).Loss,
+		func(b *budget.Budget) float64 { return b.LossError }},
+	"efficiency": {"Efficiency", "", func(f *Figures) float64 { return f.Efficiency }, (*budget.Model).EfficiencyWorking, nil},
 }
 
 func temperatureFigure(part string) (figure, bool) {
-	shown, known := map[string]func(f *Figures) float64{
-		"switch":    func(f *Figures) float64 { return f.Temperatures.Switch },
-		"rectifier": func(f *Figures) float64 { return f.Temperatures.Rectifier },
-		"inductor":  func(f *Figures) float64 { return f.Temperatures.Inductor },
+	of, known := map[string]func(t Temperatures) float64{
+		"switch":    func(t Temperatures) float64 { return t.Switch },
+		"rectifier": func(t Temperatures) float64 { return t.Rectifier },
+		"inductor":  func(t Temperatures) float64 { return t.Inductor },
 	}[part]
 	return figure{
-		title: capital(part) + ", temperature", unit: "°C", shown: shown,
+		title: capital(part) + ", temperature", unit: "°C",
+		shown: func(f *Figures) float64 { return of(f.Temperatures) },
 		ask: func(m *budget.Model, b *budget.Budget) (budget.Working, bool) {
 			return m.TemperatureWorking(b, part)
 		},
+		left: func(b *budget.Budget) float64 { return of(Temperatures(b.HeatErrors)) },
 	}, known
+}
+
+// solved says how the point was found whose figure it is, and how far that may still be
+// from the solution.
+func (f figure) solved(b *budget.Budget) string {
+	if f.left == nil {
+		return ""
+	}
+	unit := f.unit
+	if unit == "°C" {
+		unit = "K"
+	}
+	words := "Solved in " + plural(b.Iterations, "evaluation", "evaluations") + " of all losses"
+	if left := f.left(b); left > 0 {
+		return words + "; within about " + quantityOf(left, unit, 2) + " of the solution."
+	}
+	return words + "."
 }
 
 // key names the group in addresses.

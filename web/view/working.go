@@ -9,6 +9,7 @@ type Working struct {
 	Cell    string // the address of the figure's cell, to go back to
 	Unlike  string // why there is none
 	Outside bool   // a curve was held flat for it
+	Solved  string // how the point was found, of a figure that it was solved for
 	Main    *WorkingStep
 	Near    []WorkingStep // of the terms of the formula
 	Far     []WorkingStep // of their terms
