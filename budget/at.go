@@ -185,11 +185,14 @@ func (m *Model) greatestGain(last, cold *situation) heat {
 	if s.loss == 0 || math.IsInf(s.loss, 0) {
 		s = cold
 	}
-	part, gains := switchHeat, m.gains(s)
-	for i, g := range gains {
-		if g > gains[part] {
-			part = heat(i)
+	part, most := noHeat, math.Inf(-1)
+	for i, g := range m.gains(s) {
+		if g > most { // beyond any number a gain is none
+			part, most = heat(i), g
 		}
+	}
+	if part == noHeat {
+		return m.greatestGain(cold, cold)
 	}
 	return part
 }

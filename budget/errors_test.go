@@ -19,20 +19,27 @@ func polished(b *Budget) (loss float64, t [3]float64, ok bool) {
 			x[i+1] = (t - s.frame.Ambient) / p.rise[i]
 		}
 	}
+	ok = p.polish(x)
+	return s.loss, s.temperature, ok
+}
+
+// polish substitutes from x until nothing moves any more but the last digits. The
+// situation is left where that is.
+func (p *problem) polish(x unknowns) bool {
 	before := math.Inf(1)
-	for range 3000 {
+	for range 20000 {
 		r, wrong := p.at(x)
 		if wrong != sound {
-			return 0, t, false
+			return false
 		}
-		if now := r.norm(); now == 0 || now >= before && now < 1e-14*x.norm() {
-			return s.loss, s.temperature, true
-		} else {
-			before = now
+		now := r.norm()
+		if now == 0 || now >= before && now < 1e-13*x.norm() {
+			return true
 		}
+		before = now
 		x = x.plus(r)
 	}
-	return 0, t, false
+	return false
 }
 
 // TestErrorsHold asks that an answer is as near to the solution as it says: of the loss,

@@ -46,6 +46,37 @@ func (a matrix) solve(r unknowns, pace float64) (x unknowns, regular bool) {
 	return x, true
 }
 
+// settles reports whether dx/dt = −A·x comes to rest: whether all eigenvalues of A
+// have a positive real part. The coefficients of the characteristic polynomial
+// λ⁴ + c₁λ³ + c₂λ² + c₃λ + c₄ of −A follow by Faddeev and LeVerrier's recursion; all its roots
+// lie to the left by the criterion of Routh and Hurwitz (F. R. Gantmacher, The Theory
+// of Matrices, chapters IV and XV; from memory).
+func (a *matrix) settles() bool {
+	var c [5]float64
+	for k, m := 1, identity(); k <= 4; k++ {
+		m = a.scaledProduct(-1, m)
+		for i := range m {
+			c[k] -= m[i][i] / float64(k)
+		}
+		for i := range m {
+			m[i][i] += c[k]
+		}
+	}
+	return c[1] > 0 && c[2] > 0 && c[3] > 0 && c[4] > 0 && c[1]*c[2]*c[3] > c[3]*c[3]+c[1]*c[1]*c[4]
+}
+
+// scaledProduct returns k·A·B.
+func (a *matrix) scaledProduct(k float64, b matrix) (p matrix) {
+	for i := range p {
+		for j := range p {
+			for n := range a {
+				p[i][j] += k * a[i][n] * b[n][j]
+			}
+		}
+	}
+	return p
+}
+
 func (v unknowns) plus(w unknowns) unknowns {
 	for i := range v {
 		v[i] += w[i]

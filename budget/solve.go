@@ -173,9 +173,9 @@ func (p *problem) careful() answer {
 		slope := p.slope(x, r)
 		newton, regular := slope.solve(r, math.Inf(1))
 		if e := p.error(newton); regular && e <= target {
-			return p.accept(x, newton, e)
+			return p.accept(x, newton, e, slope)
 		} else if regular && e <= tolerance && (best.settled && e >= best.residual/2) {
-			return p.accept(x, newton, e)
+			return p.accept(x, newton, e, slope)
 		} else if regular && e <= tolerance {
 			best = answer{settled: true, residual: e}
 		}
@@ -192,7 +192,12 @@ func (p *problem) careful() answer {
 	return answer{iterations: p.evals}
 }
 
-func (p *problem) accept(x, step unknowns, e float64) answer {
+// accept takes the fixed point at x, unless the flow that led here would leave it
+// again: beyond the solution that was lost, long steps can end at one that is none.
+func (p *problem) accept(x, step unknowns, e float64, slope matrix) answer {
+	if !slope.settles() {
+		return answer{hot: true, iterations: p.evals}
+	}
 	p.at(x)
 	return answer{settled: true, iterations: p.evals, residual: e, step: step}
 }
