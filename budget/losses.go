@@ -212,26 +212,19 @@ func windingAC(s *situation, it *Item) float64 {
 	return sum * s.rdcr
 }
 
-// From these shares of the period on, the sum over the harmonics is taken from a table:
-// shorter ones lose digits there, in the sums themselves and where they are added up.
-const (
-	shortestRun  = 1.0 / 256 // of rise and fall
-	shortestFlow = 0.05      // of both together
-)
+// shortestRun is the share of the period of a rise or fall from which on the sum over
+// the harmonics is taken from a table; for shorter ones that loses digits.
+const shortestRun = 1.0 / 256
 
 // weighedRipple returns the sum over the harmonics of the inductor current, mean square
-// times the winding's factor, in A².
+// times the winding's factor, in A². A table is worth its making in continuous
+// conduction, where one piece of it serves all loads at an input voltage; in
+// discontinuous each point would need its own.
 func (s *situation) weighedRipple() float64 {
 	t, w := s.temperature[inductorHeat], s.flow.Triangle
-	if w.D1 >= shortestRun && w.D2 >= shortestRun && w.D1+w.D2 >= shortestFlow {
-		rise, possible := s.m.spectrum.Cosines(w.D1, t)
-		fall, both := rise, 0.0
-		if s.mode == DCM && possible {
-			fall, _ = s.m.spectrum.Cosines(w.D2, t)
-			both, possible = s.m.spectrum.Cosines(w.D1+w.D2, t)
-		}
-		if possible {
-			return w.Weighed(rise, fall, both)
+	if s.mode == CCM && w.D1 >= shortestRun && w.D2 >= shortestRun {
+		if sum, possible := s.m.spectrum.Cosines(w.D1, t); possible {
+			return w.Weighed(sum)
 		}
 	}
 	square := s.harmonics()

@@ -10,7 +10,7 @@ import (
 )
 
 // TestWeighedRipple holds the table's sum over the harmonics against the sum one by
-// one: for flows in both modes, down to where the table is left.
+// one, down to where the table is left.
 func TestWeighedRipple(t *testing.T) {
 	d := quiet()
 	d.Inductor.Winding = &Winding{Conductor: "round", Diameter: N(9e-4), Layers: N(3), Porosity: N(0.8)}
@@ -21,9 +21,6 @@ func TestWeighedRipple(t *testing.T) {
 	for range 20000 {
 		d1 := math.Pow(10, -2.2*random.Float64())
 		s.mode, s.flow = CCM, stage.Flow{Triangle: wave.Triangle{Max: 3, D1: d1, D2: 1 - d1}}
-		if random.IntN(2) == 0 {
-			s.mode, s.flow.D2 = DCM, (1-d1)*random.Float64()
-		}
 		s.temperature[inductorHeat] = -40 + 200*random.Float64()
 		square := s.harmonics()
 		want, _ := m.spectrum.Weigh(&square, s.temperature[inductorHeat])

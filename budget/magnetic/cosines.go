@@ -16,21 +16,18 @@ type patch [order]polynomial
 //
 //	C(d) = Σ F(n·f)/n⁴·(1 − cos 2π·n·d)      n = 1 … 50
 //
-// of the share d of the period (0…2; it repeats with 1) at t (°C): the sum from which
-// the loss of a current made of straight lines follows (wave.Triangle.Weighed), since
+// of the share d of the period (0…1) at t (°C): the sum from which
+// the loss of a triangular current follows (wave.Triangle.Weighed), since
 // the n-th coefficient of a corner is 1/n². It is told to 2e-13 of its largest value over
 // d; near whole periods, where it vanishes, that is few digits of itself. possible is
 // false beyond the table's temperatures; the harmonics have then to be weighed one by
 // one (Weigh).
 func (s *Spectrum) Cosines(d, t float64) (sum float64, possible bool) {
 	p, x := s.place(t)
-	if p == nil || !(d >= 0 && d <= 2) {
+	if p == nil || !(d >= 0 && d <= 1) {
 		return 0, false
 	}
-	if d > 1 {
-		d--
-	}
-	if d > 0.5 {
+	if d > 0.5 { // it is even about half a period
 		d = 1 - d
 	}
 	at := d * (2 * patchCount)
@@ -72,12 +69,15 @@ func (p *piece) newPatch(i int) *patch {
 	return p.patches[i].Load()
 }
 
-// cosineWeights returns (1 − cos 2π·n·d)/n⁴ as 2·sin²(π·n·d)/n⁴.
+// cosineWeights returns (1 − cos 2π·n·d)/n⁴ as 2·sin²(π·n·d)/n⁴, the angle turned by
+// rotation.
 func cosineWeights(d float64) (w [Harmonics]float64) {
+	sin1, cos1 := math.Sincos(math.Pi * d)
+	sin, cos := sin1, cos1
 	for i := range w {
 		n := float64(i + 1)
-		sin := math.Sin(math.Pi * n * d)
 		w[i] = 2 * sin * sin / (n * n * n * n)
+		sin, cos = sin*cos1+cos*sin1, cos*cos1-sin*sin1
 	}
 	return w
 }

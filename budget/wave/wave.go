@@ -80,15 +80,13 @@ func (w Triangle) Harmonics(square []float64) {
 }
 
 // Weighed returns the sum of the mean squares of the harmonics in A², each times a
-// weight w_n, from sums over these weights alone:
+// weight w_n, of a triangle that does not rest (D1 + D2 = 1), from a sum over the weights
+// alone:
 //
-//	Σ I_n²·w_n = Δ²/(4π⁴)·[C(D1)/D1² + C(D2)/D2² + (C(D1) + C(D2) − C(D1 + D2))/(D1·D2)]
-//	C(d) = Σ w_n/n⁴·(1 − cos 2πnd)
+//	Σ I_n²·w_n = Δ²/(4π⁴·D1²·D2²)·C      C = Σ w_n/n⁴·(1 − cos 2πn·D1)
 //
-// which is the square in Harmonics multiplied out; rise, fall and both are C at D1, D2
-// and their sum. Where D1 + D2 is small the bracket loses digits.
-func (w Triangle) Weighed(rise, fall, both float64) float64 {
-	swing := w.Swing()
-	bracket := rise/(w.D1*w.D1) + fall/(w.D2*w.D2) + (rise+fall-both)/(w.D1*w.D2)
-	return swing * swing / (4 * math.Pi * math.Pi * math.Pi * math.Pi) * bracket
+// which is the square in Harmonics multiplied out.
+func (w Triangle) Weighed(sum float64) float64 {
+	swing := w.Swing() / (2 * math.Pi * math.Pi * w.D1 * w.D2)
+	return swing * swing * sum
 }
