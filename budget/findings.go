@@ -62,7 +62,7 @@ func share(list []observation, g gauge, value, rating float64, what, unit, help 
 var pointRules = []func(m *Model, b *Budget, s *situation) []observation{
 	blockingVoltage, currentRating, junction, thermalGain, saturation, inductorHeatLimits,
 	capacitorLimits, modulation, driveHeadroom, recoverySlope, outsideCurve, supplyLow,
-	hazardVoltage, hotSurface, implausible,
+	hazardVoltage, hotSurface, implausible, straightLine,
 }
 
 // Findings returns what is to be said of one point, worst first.

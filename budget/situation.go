@@ -110,11 +110,7 @@ func (s *situation) carry(stageLoss float64) fault {
 	s.guess = stageLoss
 	s.is = (m.vout*f.io + stageLoss) / f.Vin
 	s.il = m.topology.MeanCurrent(s.is, f.io)
-	branches := stage.Branches{
-		On:        s.rds + s.rdcr + m.seriesOn,
-		Off:       s.rdcr + m.seriesOff + s.rdsRectifier + s.forwardOhm,
-		Threshold: s.forwardVolt,
-	}
+	branches := s.branches()
 	var wrong stage.Fault
 	if s.mode == DCM {
 		s.flow, wrong = stage.Discontinuous(f.flux, branches, m.law, s.il)
@@ -131,6 +127,15 @@ func (s *situation) carry(stageLoss float64) fault {
 	s.inputAC = s.of(m.topology.InputSees).RippleSquare()
 	s.outputAC = s.of(m.topology.OutputSees).RippleSquare()
 	return s.commutate()
+}
+
+// branches returns what lies in the two current paths at the temperatures of the moment.
+func (s *situation) branches() stage.Branches {
+	return stage.Branches{
+		On:        s.rds + s.rdcr + s.m.seriesOn,
+		Off:       s.rdcr + s.m.seriesOff + s.rdsRectifier + s.forwardOhm,
+		Threshold: s.forwardVolt,
+	}
 }
 
 func (s *situation) of(b stage.Branch) wave.Share {
