@@ -142,11 +142,14 @@ func (s *situation) tooHot() heat {
 var partNames = [3]string{"switch", "rectifier", "inductor"}
 
 // gains returns (theta_ja + enclosure_theta)·dP/dT of the parts with the currents
-// held: 1 is where a part heats itself as fast as it can shed heat.
+// held: 1 is where a part heats itself as fast as it can shed heat. One that heat
+// doesn't warm has none, however steep its loss.
 func (m *Model) gains(s *situation) [3]float64 {
 	var gains [3]float64
 	for part := range gains {
-		gains[part] = (m.theta[part] + m.enclosure) * s.heatSlope(part)
+		if theta := m.theta[part] + m.enclosure; theta > 0 {
+			gains[part] = theta * s.heatSlope(part)
+		}
 	}
 	return gains
 }

@@ -81,3 +81,30 @@ func TestColdRoot(t *testing.T) {
 		t.Error("too few of either to prove anything")
 	}
 }
+
+// TestRunawayPart warms the air until a leaking diode runs away, with nothing else that
+// heat warms: it is the diode that has to be named, also where every model ends just
+// beside the last iterate.
+func TestRunawayPart(t *testing.T) {
+	d := lean()
+	d.Rectifier, d.Input, d.Output = "diode", Input{N(15), N(15), N(15)}, Output{N(7.5), N(1)}
+	d.Inductor.Core = nil
+	d.Diode = &Diode{VRRM: N(100), VF0: N(0), ThetaJA: N(10.1), ILeak: N(0.21), ILeakVoltage: N(15), ILeakTemperature: N(125), ILeakDoubling: N(12.6)}
+	m, err := Prepare(d)
+	if err != nil {
+		t.Fatal(err)
+	}
+	named := 0
+	for air := 80.0; air < 130; air += 0.01 {
+		var b Budget
+		if m.At(Point{15, 1, air}, &b); b.State != Runaway {
+			continue
+		}
+		if named++; b.Part != "rectifier" {
+			t.Fatalf("at %.2f °C %q runs away: %s", air, b.Part, b.Reason())
+		}
+	}
+	if named < 500 {
+		t.Errorf("only %d points run away", named)
+	}
+}
