@@ -63,7 +63,7 @@ type room struct{ ours, others string }
 
 var rooms = map[string]room{
 	".":                {"web store", "github.com/adrg/xdg"},
-	"web":              {"web/view web/quantity store budget budget/formula assets", "github.com/go-chi/chi/v5 github.com/a-h/templ github.com/go-json-experiment/json github.com/xuri/excelize/v2"},
+	"web":              {"web/view web/quantity store budget budget/formula budget/proof assets", "github.com/go-chi/chi/v5 github.com/a-h/templ github.com/go-json-experiment/json github.com/xuri/excelize/v2"},
 	"web/view":         {"", "github.com/a-h/templ"},
 	"web/quantity":     {},
 	"store":            {"budget migrations", "github.com/golang-migrate/migrate/v4 modernc.org/sqlite golang.org/x/sys"},
@@ -71,7 +71,8 @@ var rooms = map[string]room{
 	"assets":           {},
 	"assets/vendoring": {},
 	"budget":           {"budget/stage budget/wave budget/device budget/magnetic budget/formula", "gonum.org/v1/gonum"},
-	"budget/stage":     {"budget/wave", ""}, // a solved balance is a current, and wave is what a current is
+	"budget/proof":     {"budget budget/stage budget/wave budget/device budget/magnetic", "gonum.org/v1/gonum"}, // asks the whole model, and its parts where the whole has no such entry
+	"budget/stage":     {"budget/wave", ""},                                                                     // a solved balance is a current, and wave is what a current is
 	"budget/wave":      {},
 	"budget/formula":   {},
 	"budget/device":    {},

@@ -56,8 +56,8 @@ func TestTurnOnEnergy(t *testing.T) {
 			{"both", device.TurnOnEnergy(c, c, vb, vx), sw + re, 1e-7, burnt},
 		})
 	}
-	constant := device.ChargeOf(685e-12*25, 685e-12*25*25/2, 25, true)
-	hold(t, []row{{"two constant capacitances", device.TurnOnEnergy(constant, constant, 25, 25), 685e-12 * 25 * 25, exact, "½·C·V² each (LT8708 Rev 0, p. 53)"}})
+	constant := device.ChargeOf(500e-12*40, 500e-12*40*40/2, 40, true)
+	hold(t, []row{{"two constant capacitances", device.TurnOnEnergy(constant, constant, 40, 40), 500e-12 * 40 * 40, exact, "½·C·V² each"}})
 	hoarder := device.ChargeOf(1e-9, 0.999e-9*25, 25, true)
 	if got := device.TurnOnEnergy(none, hoarder, 50, 10); got != 0 {
 		t.Errorf("a stated energy above what the source brings gives %g J, want 0", got)

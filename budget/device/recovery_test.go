@@ -7,18 +7,6 @@ import (
 	"lossbook/budget/device"
 )
 
-// TestRecoveryTriangle is a university's worked triangle: 50 A/µs, t_rr 3.9 µs with
-// t_b/t_a 0.3, so t_a 3 µs, a peak of 150 A and 292.5 µC.
-func TestRecoveryTriangle(t *testing.T) {
-	r := device.Recovery{Charge: 292.5e-6, Current: 10, Slope: 50e6, Softness: 0.3}.At(10, 50e6)
-	hold(t, []row{
-		{"t_a", r.Rise, 3e-6, exact, "the triangle's solution, 3 µs"},
-		{"peak", 50e6 * r.Rise, 150, exact, "the triangle's solution, 150 A"},
-		{"charge", r.Charge, 292.5e-6, 0, "the triangle's solution, 292.5 µC"},
-		{"tail", r.Tail, 150 * 0.9e-6 / 2, exact, "area of the falling side"},
-	})
-}
-
 // TestRecoveryEnergy integrates v·i: for t_a the switch stands at vb and carries load
 // and reverse current; for t_b the voltage passes to the rectifier in a straight line
 // while the reverse current falls in one. The load current in t_b belongs to turn-on.

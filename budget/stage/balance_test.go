@@ -1,7 +1,6 @@
 package stage_test
 
 import (
-	"fmt"
 	"math"
 	"testing"
 
@@ -15,97 +14,16 @@ func coil(l float64) stage.Linkage { return magnetic.NewLinkage(l, 0, 0, nil) }
 // soft is a coil that has lost 40 % at 5 A.
 func soft(l float64) stage.Linkage { return magnetic.NewLinkage(l, 5, 0.4, nil) }
 
-// TestRatioWithDrops takes the output voltages that follow from winding, switch and
-// diode drops (Erickson & Maksimović, chapter 3; 12 V, RL 0.2, Ron 0.1, RD 0.05, VD
-// 0.7 V, D 0.5) and asks for the duty back.
-func TestRatioWithDrops(t *testing.T) {
-	const vg, rl, ron, rd, vd, d = 12.0, 0.2, 0.1, 0.05, 0.7, 0.5
-	b := stage.Branches{On: rl + ron, Off: rl + rd, Threshold: vd}
-	var rows []row
-	for _, c := range []struct {
-		name                   string
-		vout, load, efficiency float64
-	}{{"boost", 22.7984, 50, 0.949935}, {"buck_boost", 11.0568, 50, 0.921396}, {"buck", 5.35545, 5, 0.89258}} {
-		s := topology(t, c.name)
-		io := c.vout / c.load
-		is := c.vout * io / c.efficiency / vg
-		flow, fault := stage.Continuous(drive(s, vg, c.vout), b, coil(1), s.MeanCurrent(is, io))
-		if fault != stage.NoFault {
-			t.Fatalf("%s: fault %d", c.name, fault)
+// TestFlow asks for what a flow holds beside its current.
+func TestFlow(t *testing.T) {
+	d := stage.Drive{On: 7, Off: 5, Period: period}
+	for name, solve := range map[string]func(stage.Drive, stage.Branches, stage.Linkage, float64) (stage.Flow, stage.Fault){"continuous": stage.Continuous, "discontinuous": stage.Discontinuous} {
+		flow, fault := solve(d, stage.Branches{On: 0.1, Off: 0.2, Threshold: 0.4}, coil(4.2e-6), 0.8)
+		if fault != stage.NoFault || flow.OnTime == 0 {
+			t.Errorf("%s: fault %d, %+v", name, fault, flow)
 		}
-		drawn := flow.Rise().Mean()
-		if s.InputSees == stage.Inductor {
-			drawn = (flow.Min + flow.Max) / 2
-		}
-		const source = "Erickson & Maksimović, chapter 3, derived"
-		rows = append(rows, row{c.name + " duty", flow.D1, d, 1e-5, source},
-			row{c.name + " efficiency", c.vout * io / (vg * drawn), c.efficiency, 1e-5, source})
+		hold(t, []row{{name + " linkage", flow.Linkage, 4.2e-6 * flow.Swing(), 1e-14, "L·Δi"}, {name + " on-time", flow.OnTime, flow.D1 * period, exact, "D·T"}})
 	}
-	hold(t, rows)
-}
-
-// TestGreatestRatio is the boost with winding resistance: M = (1/D')/(1 + RL/(D'²R)),
-// RL/R 0.02, is greatest, 3.5355, at D 0.85858, where half the power is lost.
-func TestGreatestRatio(t *testing.T) {
-	const rl, d = 0.02, 0.85858 // of R = 1 Ω, from 1 V
-	s := topology(t, "boost")
-	duty := func(ratio, il float64) float64 {
-		flow, _ := stage.Continuous(drive(s, 1, ratio), stage.Branches{On: rl, Off: rl}, coil(1), il)
-		return flow.D1
-	}
-	ratio := 1 / (2 * math.Sqrt(rl))
-	hold(t, []row{
-		{"greatest ratio", ratio, 3.5355, 1e-5, "Erickson & Maksimović, chapter 3"},
-		{"its duty", duty(ratio, ratio/(1-d)), d, 1e-5, "Erickson & Maksimović, chapter 3"},
-		{"D 0.5", duty(2*0.92593, 2*2*0.92593), 0.5, 1e-5, "M = 2·0.92593 there"},
-	})
-}
-
-// TestBoostWithDrops is the TI data sheet SLVS497E (TPS65140), p. 13: 3.3 V to 10 V,
-// 0.3 A, 1.6 MHz, 4.2 µH, 0.5 V in the switch and 0.8 V in the diode. It rounds the
-// duty up to 0.73 and carries that on.
-func TestBoostWithDrops(t *testing.T) {
-	d := stage.Drive{On: 3.3 - 0.5, Off: 10 - 3.3, Period: 1 / 1.6e6}
-	flow, _ := stage.Continuous(d, stage.Branches{Threshold: 0.8}, coil(4.2e-6), 0.3/(1-0.73))
-	const source = "TI SLVS497E, p. 13"
-	hold(t, []row{
-		{"duty", flow.D1, 0.73, 4e-3, source}, {"mean", (flow.Min + flow.Max) / 2, 1.11, 2e-3, source},
-		{"ripple", flow.Swing(), 0.304, 3e-3, source}, {"peak", flow.Max, 1.26, 3e-3, source},
-		{"linkage", flow.Linkage, 4.2e-6 * flow.Swing(), 1e-14, "L·Δi"}, {"on-time", flow.OnTime, flow.D1 / 1.6e6, exact, "D·T"},
-	})
-}
-
-// TestInvertingCurrents is TI SNVAA71: what an inverting stage gives of 8 A in its
-// inductor, Iout = IL·(1 − D).
-func TestInvertingCurrents(t *testing.T) {
-	var rows []row
-	s := topology(t, "buck_boost")
-	for d, want := range map[float64]float64{0.063: 7.5, 0.093: 7.3, 0.126: 7.0, 0.161: 6.7, 0.230: 6.2} {
-		flow, _ := stage.Continuous(drive(s, 10, 10*d/(1-d)), stage.Branches{}, coil(1), 8)
-		rows = append(rows, row{fmt.Sprintf("D %g", d), flow.Fall().Mean(), want, 7e-3, "TI SNVAA71"})
-	}
-	hold(t, rows)
-}
-
-// TestDiscontinuousRatio holds the closed forms of chapter 5 at D 0.4, K = 2L/(RT) = 0.1.
-func TestDiscontinuousRatio(t *testing.T) {
-	const vg, load, k, d = 10.0, 20.0, 0.1, 0.4
-	l := k * load * period / 2
-	var rows []row
-	for name, ratio := range map[string]float64{"buck": 0.696663, "boost": 1.860147, "buck_boost": 1.264911} {
-		s := topology(t, name)
-		vout := ratio * vg
-		io := vout / load
-		flow, fault := stage.Discontinuous(drive(s, vg, vout), stage.Branches{}, coil(l), s.MeanCurrent(vout*io/vg, io))
-		if fault != stage.NoFault {
-			t.Fatalf("%s: fault %d", name, fault)
-		}
-		if name == "boost" { // its inductor's mean is the input current; rest and ratio come out of the same balance
-			rows = append(rows, row{"boost rest", flow.D2, d / (ratio - 1), 2e-5, "volt-seconds, D1/(M − 1)"})
-		}
-		rows = append(rows, row{name + " duty", flow.D1, d, 2e-6, "Erickson & Maksimović, chapter 5, derived"})
-	}
-	hold(t, rows)
 }
 
 // TestBoundary puts each stage on the boundary of its modes: K is 1 − D, D·(1 − D)²,
