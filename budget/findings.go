@@ -70,11 +70,7 @@ func (m *Model) Findings(b *Budget) []Finding { return plain(m.observe(b)) }
 
 func (m *Model) observe(b *Budget) []observation {
 	if b.State != Settled {
-		severity := 1.0
-		if b.State == Runaway {
-			severity = 2
-		}
-		return []observation{{Finding{Level: Exceeded, Part: b.Part, Rule: "unsettled", Message: b.Reason(), Source: "the balance of power and heat"}, "", severity}}
+		return []observation{{Finding: Finding{Level: Exceeded, Part: b.Part, Rule: "unsettled", Message: b.Reason(), Source: "the balance of power and heat"}}}
 	}
 	s := m.situationOf(b)
 	var list []observation

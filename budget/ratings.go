@@ -15,14 +15,12 @@ func blockingVoltage(m *Model, b *Budget, s *situation) (list []observation) {
 	help := "a part rated higher leaves room for ringing and surges"
 	list = share(list, gauge{part: "switch", rule: "blocking_voltage", caution: 0.8, source: "80 %: " + practice},
 		vb, m.design.Switch.VdsRating.V, "the blocking voltage at the highest input", "V", help)
-	rating := 0.0
+	rating := orZero(m.design.Diode).VRRM
 	if m.sync {
-		rating = m.design.SyncSwitch.VdsRating.V
-	} else {
-		rating = m.design.Diode.VRRM.V
+		rating = m.design.SyncSwitch.VdsRating
 	}
 	return share(list, gauge{part: "rectifier", rule: "blocking_voltage", caution: 0.8, source: "80 %: " + practice},
-		vb, rating, "the blocking voltage at the highest input", "V", help)
+		vb, rating.V, "the blocking voltage at the highest input", "V", help)
 }
 
 func currentRating(m *Model, b *Budget, s *situation) (list []observation) {

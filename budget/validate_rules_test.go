@@ -50,6 +50,8 @@ var halves = []struct {
 	{"a little more, before", all(set("frequency", 250e3), set("drive.dead_time_on", 1.0001e-6), set("drive.dead_time_off", 1e-6)), "drive.dead_time_on"},
 	{"a little more, after", all(set("frequency", 250e3), set("drive.dead_time_on", 1e-6), set("drive.dead_time_off", 1.0001e-6)), "drive.dead_time_off"},
 
+	{"a little more, both alike", all(set("frequency", 250e3), set("drive.dead_time_on", 1.0001e-6), set("drive.dead_time_off", 1.0001e-6)), "drive.dead_time_on"},
+
 	{"recovery without its current", unset("sync_switch.q_rr_current"), "sync_switch.q_rr_current?"},
 	{"recovery at no current", set("sync_switch.q_rr_current", 0), "sync_switch.q_rr_current"},
 	{"recovery without its slope", unset("sync_switch.q_rr_didt"), "sync_switch.q_rr_didt?"},
@@ -102,6 +104,7 @@ var halves = []struct {
 	{"a reference loss of no ripple", all(catalogue(""), set("inductor.core.reference_ripple", 0)), "inductor.core.reference_ripple"},
 	{"a reference loss", catalogue(""), ""},
 	{"a stated reference loss of nothing", all(catalogue(""), set("inductor.core.reference_power", 0)), ""},
+	{"one entry of the other kind of core", all(catalogue(""), set("inductor.core.volume", 1e-6)), "inductor.core.volume"},
 	{"both kinds of core", set("inductor.core.reference_power", 1), "inductor.core.volume inductor.core.area inductor.core.turns inductor.core.k"},
 	{"two factors of temperature", unset("inductor.core.ct1"), "inductor.core.ct1?"},
 	{"one factor", all(unset("inductor.core.ct0"), unset("inductor.core.ct2")), "inductor.core.ct0? inductor.core.ct2?"},

@@ -77,6 +77,7 @@ var rooms = map[string]room{
 	"budget/formula":   {},
 	"budget/device":    {},
 	"budget/magnetic":  {},
+	"budget/mutants":   {},
 }
 
 var testModules = strings.Fields("github.com/google/go-cmp pgregory.net/rapid github.com/chromedp/chromedp github.com/chromedp/cdproto gonum.org/v1/gonum golang.org/x/net")

@@ -8,7 +8,7 @@ import (
 )
 
 func TestValue(t *testing.T) {
-	values := map[string]float64{"a": 2, "b": 3, "V_b": 24, "t_d,on": 5, "Δλ": 7, "x": -4}
+	values := map[string]float64{"a": 2, "b": 3, "V_b": 24, "t_d,on": 5, "Δλ": 7, "x": -4, "a0": 11, "z9": 12, "Q_0": 13, "Q_9": 14, "R_g,0": 15, "R_g,9": 16}
 	for text, want := range map[string]float64{
 		"a + b·a":         8,
 		"a − b − a":       -3,
@@ -29,6 +29,10 @@ func TestValue(t *testing.T) {
 		"2·π":             2 * math.Pi,
 		"⅔·b":             2,
 		"0.00393·(a − 1)": 0.00393,
+		"a0 + z9":         23,
+		"Q_0 + Q_9":       27,
+		"R_g,0 + R_g,9":   31,
+		"9 + 0.5":         9.5,
 	} {
 		e, err := Parse(text)
 		if err != nil {
@@ -47,8 +51,10 @@ func TestUnreadable(t *testing.T) {
 			t.Errorf("%q is read as %+v", text, e.Root)
 		}
 	}
-	if _, err := Must("a·c").Value(map[string]float64{"a": 1}); err == nil || !strings.Contains(err.Error(), "c has no value") {
-		t.Errorf("a name without a value: %v", err)
+	for _, text := range []string{"c", "a·c", "a + √(c·a)"} {
+		if v, err := Must(text).Value(map[string]float64{"a": 1}); err == nil || v != 0 || !strings.Contains(err.Error(), "c has no value") {
+			t.Errorf("%s, a name without a value: %v, %v", text, v, err)
+		}
 	}
 }
 

@@ -27,6 +27,7 @@ func TestLinkage(t *testing.T) {
 	area := func(i float64) float64 { return integral(law.Slope, 0, i) }
 	plain := magnetic.NewLinkage(l, 0, 0, nil)
 	curve := magnetic.NewLinkage(1, sat, drop, falling{})
+	large := magnetic.NewLinkage(l, 1000, drop, nil) // a law of large currents, whose rate is small
 	hold(t, []row{
 		{"inductance at i_sat", law.Slope(sat), 0.7 * l, exact, "the stated drop"},
 		{"inductance at no current", law.Slope(0), l, 0, "the entry"},
@@ -34,6 +35,8 @@ func TestLinkage(t *testing.T) {
 		{"linkage at 5 A", law.At(5), area(5), 1e-14, "quadrature of L(i)"},
 		{"linkage at 20 A", law.At(20), area(20), 1e-13, "quadrature of L(i)"},
 		{"linkage at −5 A", law.At(-5), -area(5), 1e-14, "odd"},
+		{"inductance at 1000 A", large.Slope(1000), 0.7 * l, exact, "the stated drop"},
+		{"linkage at 1000 A", large.At(1000), integral(large.Slope, 0, 1000), 1e-14, "quadrature of L(i)"},
 		{"tiny drop", magnetic.NewLinkage(l, sat, 1e-12, nil).At(5), l * 5, 1e-12, "next to constant"},
 		{"constant", plain.At(-3), -3 * l, exact, "L·i"},
 		{"constant slope", plain.Slope(100), l, 0, "L"},
@@ -94,9 +97,11 @@ func TestSwing(t *testing.T) {
 	if half, possible := curve.Swing(5, 0); half != 0 || !possible {
 		t.Errorf("no swing on a curve: %g, %v", half, possible)
 	}
+	large := magnetic.NewLinkage(l, 1000, drop, nil)
+	far, _ := large.Swing(700, 2e-2)
 	half, _ := magnetic.NewLinkage(l, 0, 0, nil).Swing(7, 3e-5)
 	small, _ := law.Swing(4, 1e-15)
-	rows = append(rows, row{"constant", half, 3e-5 / l / 2, exact, "Δλ/L/2"},
+	rows = append(rows, row{"law of large currents", far, bisected(large, 700, 2e-2), 1e-12, "bisection"}, row{"constant", half, 3e-5 / l / 2, exact, "Δλ/L/2"},
 		row{"next to no swing", small, 1e-15 / law.Slope(4) / 2, 1e-12, "Δλ/L(i)/2"})
 	hold(t, rows)
 }
