@@ -23,6 +23,8 @@ func TestValue(t *testing.T) {
 		"√V_b^2":          24,
 		"|x|·t_d,on":      20,
 		"max(a, b) + Δλ":  10,
+		"max(b, a)":       3,
+		"min(a, b)":       2,
 		"min(t_d,on, x)":  -4,
 		"exp(ln(b))":      3,
 		"Γ(5)":            24,
