@@ -95,8 +95,8 @@ func (h *host) stop() {
 	}
 }
 
-// call uses the API as a script does.
-func (h *host) call(status int, method, path string, body any) {
+// call uses the API as a script does, and returns what it answers.
+func (h *host) call(status int, method, path string, body any) []byte {
 	h.t.Helper()
 	r, err := http.NewRequest(method, "http://"+h.address+"/api/v1"+path, bytes.NewBufferString(text(h.t, body)))
 	if err != nil {
@@ -108,9 +108,11 @@ func (h *host) call(status int, method, path string, body any) {
 		h.t.Fatal(err)
 	}
 	defer w.Body.Close()
-	if answer, _ := io.ReadAll(w.Body); w.StatusCode != status {
-		h.t.Fatalf("%s %s: %s %s", method, path, w.Status, answer)
+	answer, err := io.ReadAll(w.Body)
+	if err != nil || w.StatusCode != status {
+		h.t.Fatalf("%s %s: %s %s (%v)", method, path, w.Status, answer, err)
 	}
+	return answer
 }
 
 // ears gather what a tab says and asks for.

@@ -18,6 +18,7 @@ var keys = map[string]input.DispatchKeyEventParams{
 	"Up":        {Key: "ArrowUp", Code: "ArrowUp", WindowsVirtualKeyCode: 38},
 	"Left":      {Key: "ArrowLeft", Code: "ArrowLeft", WindowsVirtualKeyCode: 37},
 	"Right":     {Key: "ArrowRight", Code: "ArrowRight", WindowsVirtualKeyCode: 39},
+	"Escape":    {Key: "Escape", Code: "Escape", WindowsVirtualKeyCode: 27},
 	"Home":      {Key: "Home", Code: "Home", WindowsVirtualKeyCode: 36},
 }
 

@@ -135,6 +135,7 @@ func savedPage(ctx context.Context, saved store.Revision, design *budget.Design,
 		return page, err
 	}
 	p := remembered(design, points, findings, g)
+	p.model = saved.Model
 	if p.energy, p.worked, err = savedEnergy(ctx, saved, design); err != nil {
 		return page, err
 	}

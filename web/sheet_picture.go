@@ -17,6 +17,7 @@ type picture struct {
 	lines    []line
 	findings []Finding
 	energy   *Energy // of the load profile; nil where there is none
+	model    string  // which a revision was saved with; "" of a sheet
 	worked   string  // which model the profile was worked with, where it is another than that of the rest
 }
 

@@ -16,7 +16,7 @@ func (p *picture) working(base string) *view.Working {
 		return nil
 	}
 	w := &view.Working{Title: "No such figure", Close: p.spot.opened("").address(base), Cell: p.spot.address(base), At: p.spot.words(p.design)}
-	f, known := figureOf(p.design, p.spot.working)
+	f, known := figureOf(itemsOf(p.design, p.columns), p.spot.working)
 	q := p.chosen()
 	if known {
 		w.Title = f.title
@@ -35,7 +35,8 @@ func (p *picture) working(base string) *view.Working {
 }
 
 // explain works the figure out anew from the design. Where that gives another than
-// the one shown, as an older model's may be, it says so instead.
+// the one shown, as an older model's may be, or the same from other cells, it says so
+// instead: no term is shown that does not lead to the figure.
 func (p *picture) explain(w *view.Working, q *Point, f figure) {
 	shown := f.shown(q.Figures)
 	found, b, known := f.workedOut(p.design, q)
@@ -44,10 +45,21 @@ func (p *picture) explain(w *view.Working, q *Point, f figure) {
 		w.Unlike = kept + "has no working of it."
 	case far(found.Value(), shown):
 		w.Unlike = kept + "gives " + showing(found.Value(), f.unit) + ", so its working would not be that of the figure kept."
+	case f.alike != nil && !f.alike(q.Figures, figuresOf(b)):
+		w.Unlike = kept + "gives the same, but not from the figures kept beside it; so its working would not be that of the figure kept."
 	default:
+		w.Anew = p.anew()
 		fillWorking(w, p.design, found)
 		w.Solved = f.solved(b)
 	}
+}
+
+// anew says that a working is of another model than the figure, where it is.
+func (p *picture) anew() string {
+	if p.model == "" || p.model == budget.ModelVersion {
+		return ""
+	}
+	return "Kept with model " + p.model + ". Model " + budget.ModelVersion + ", which runs now, gives the same figure; this is its working."
 }
 
 // workedOut asks the model how the figure came about at a point.

@@ -15,6 +15,8 @@ type figure struct {
 	title string
 	unit  quantity.Unit
 	shown func(f *Figures) float64
+	// Of a figure that is made of other cells: whether these are the same in both.
+	alike func(kept, now *Figures) bool
 	ask   func(m *budget.Model, b *budget.Budget) (budget.Working, bool)
 	left  func(b *budget.Budget) float64 // how far it may be from the solution, of a figure that a point is solved for
 }
@@ -26,10 +28,10 @@ const (
 	temperatureKey = "temperature"
 )
 
-// figureOf finds the row that an address names: "switch.conduction" is an item,
-// "subtotal.switch" a part's sum, "temperature.switch" and "budget.loss" a line of the
-// foot.
-func figureOf(d *budget.Design, key string) (figure, bool) {
+// figureOf finds the row that an address names, among a table's losses:
+// "switch.conduction" is an item, "subtotal.switch" a part's sum, "temperature.switch"
+// and "budget.loss" a line of the foot.
+func figureOf(items []Item, key string) (figure, bool) {
 	kind, name, _ := strings.Cut(key, ".")
 	switch kind {
 	case subtotalKey:
@@ -40,11 +42,13 @@ func figureOf(d *budget.Design, key string) (figure, bool) {
 	case temperatureKey:
 		return temperatureFigure(name)
 	}
-	return itemFigure(d, kind, name)
+	return itemFigure(items, kind, name)
 }
 
-func itemFigure(d *budget.Design, part, kind string) (figure, bool) {
-	i := slices.Index(budget.Ledger(d), budget.Row{Part: part, Kind: kind})
+// itemFigure is found by its names: the losses of a revision are those it was saved
+// with, which needn't be today's.
+func itemFigure(items []Item, part, kind string) (figure, bool) {
+	i := slices.IndexFunc(items, func(it Item) bool { return it.Part == part && it.Kind == kind })
 	return figure{
 		title: workingTitle(Item{Part: part, Kind: kind}), unit: "W",
 		shown: func(f *Figures) float64 { return f.Items[i].Power },
@@ -63,21 +67,39 @@ func subtotalFigure(name string) (figure, bool) {
 	return figure{
 		title: g.title + ", all losses", unit: "W",
 		shown: func(f *Figures) (sum float64) {
-			for _, it := range f.Items {
-				if slices.Contains(g.parts, it.Part) {
-					sum += it.Power
-				}
+			for _, it := range summands(f.Items, g.parts...) {
+				sum += it.Power
 			}
 			return sum
+		},
+		alike: func(kept, now *Figures) bool {
+			return !itemsDiffer(summands(kept.Items, g.parts...), summands(now.Items, g.parts...))
 		},
 		ask: func(m *budget.Model, b *budget.Budget) (budget.Working, bool) { return m.Subtotal(b, g.parts...) },
 	}, true
 }
 
+// summands are the losses that a sum is made of: those of the parts, or of all where
+// none is named, without those that are 0.
+func summands(items []Item, parts ...string) (list []Item) {
+	for _, it := range items {
+		if it.Power != 0 && (len(parts) == 0 || slices.Contains(parts, it.Part)) {
+			list = append(list, it)
+		}
+	}
+	return list
+}
+
 var budgetFigures = map[string]figure{
-	"loss": {"Loss", "W", func(f *Figures) float64 { return f.Loss }, (*budget.Model).Loss,
-		func(b *budget.Budget) float64 { return b.LossError }},
-	"efficiency": {"Efficiency", "", func(f *Figures) float64 { return f.Efficiency }, (*budget.Model).EfficiencyWorking, nil},
+	"loss": {
+		title: "Loss", unit: "W", shown: func(f *Figures) float64 { return f.Loss }, ask: (*budget.Model).Loss,
+		alike: func(kept, now *Figures) bool { return !itemsDiffer(summands(kept.Items), summands(now.Items)) },
+		left:  func(b *budget.Budget) float64 { return b.LossError },
+	},
+	"efficiency": {
+		title: "Efficiency", shown: func(f *Figures) float64 { return f.Efficiency }, ask: (*budget.Model).EfficiencyWorking,
+		alike: func(kept, now *Figures) bool { return !far(kept.Pout, now.Pout) && !far(kept.Loss, now.Loss) },
+	},
 }
 
 func temperatureFigure(part string) (figure, bool) {

@@ -106,32 +106,71 @@ func TestNoSuchWorking(t *testing.T) {
 	}
 }
 
+// workingAt reads the panel of a figure of a revision at full load.
+func (s *site) workingAt(revision int, key string) page {
+	s.t.Helper()
+	address := sight{load: "100", working: key}.address(revisionAddress(1, revision))
+	return page{s.t, s.open(200, address).one("working"), 200}
+}
+
 // A revision shows the figures that were saved. Where the model of today gives others,
 // their working would be that of something else.
 func TestWorkingOfARevision(t *testing.T) {
 	s := seeded(t)
-	const conduction = "?load=100&working=switch.conduction"
-	if got := words(s.open(200, "/designs/1/revisions/1"+conduction).one("working")); !strings.Contains(got, "R DS") || strings.Contains(got, "would not be") {
+	if got := s.workingAt(1, "switch.conduction").words(); !strings.Contains(got, "R DS") || strings.Contains(got, "would not be") || strings.Contains(got, "Kept with") {
 		t.Errorf("revision 1: %s", got)
 	}
 	first, err := s.store.Revision(t.Context(), 1, 1)
 	if err != nil {
 		t.Fatal(err)
 	}
-	points, _, err := savedResults(first)
-	if err != nil {
-		t.Fatal(err)
+	changed := func(change func(f *Figures)) {
+		t.Helper()
+		points, _, err := savedResults(first)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for i := range points {
+			change(points[i].Figures)
+		}
+		s.another("0", points)
 	}
-	for i := range points {
-		points[i].Items[0].Power *= 1 + 1e-7
+	changed(func(f *Figures) { f.Items[0].Power *= 1 + 1e-7 })
+	changed(func(f *Figures) { // as much more here as less there: the sums stay
+		f.Items[0].Power += 1e-3
+		f.Items[1].Power -= 1e-3
+	})
+	changed(func(f *Figures) { f.Pout, f.Loss = 2*f.Pout, 2*f.Loss })
+	changed(func(f *Figures) { // a model of fewer losses, and of one that is gone
+		f.Items = append(slices.Clone(f.Items[2:]), Item{Part: "switch", Kind: "ageing", Power: 1e-3})
+	})
+	for _, want := range []struct {
+		revision  int
+		key, says string
+	}{
+		{2, "switch.conduction", "would not be that of the figure kept"}, {2, "subtotal.switch", "would not be that of the figure kept"},
+		{2, "budget.loss", "gives the same, but not from the figures kept beside it"},
+		{3, "switch.turn_on", "would not be that of the figure kept"},
+		{3, "subtotal.switch", "gives the same, but not from the figures kept beside it"}, {3, "budget.loss", "gives the same, but not from the figures kept beside it"},
+		{4, "budget.efficiency", "gives the same, but not from the figures kept beside it"}, {4, "budget.loss", "would not be that of the figure kept"},
+		{5, "switch.ageing", "has no working of it"}, {5, "switch.conduction", "no figure of that name"}, {5, "subtotal.switch", "would not be that of the figure kept"},
+	} {
+		got := s.workingAt(want.revision, want.key)
+		if !strings.Contains(got.words(), want.says) || len(got.all(tag("math"))) > 0 {
+			t.Errorf("revision %d, %s: %s", want.revision, want.key, got.words())
+		}
 	}
-	s.another("0", points)
-	got := s.open(200, "/designs/1/revisions/2"+conduction).one("working")
-	if text := words(got); !strings.Contains(text, "Kept as ") || !strings.Contains(text, "would not be that of the figure kept") || len(page{t, got, 200}.all(tag("math"))) > 0 {
-		t.Errorf("a figure of another model: %s", text)
-	}
-	if got := words(s.open(200, "/designs/1/revisions/2?load=100&working=switch.turn_off").one("working")); !strings.Contains(got, "SLUA618") {
-		t.Errorf("a figure that is the same still: %s", got)
+	for _, same := range []struct {
+		revision  int
+		key, says string
+	}{
+		{2, "switch.turn_off", "SLUA618"}, {2, "budget.efficiency", "P out"}, {3, "subtotal.rectifier", "added up"}, {5, "switch.turn_off", "SLUA618"},
+		{5, "temperature.switch", "T a"},
+	} {
+		got := s.workingAt(same.revision, same.key)
+		if !strings.Contains(got.words(), same.says) || !strings.Contains(got.words(), "Kept with model 0. Model "+budget.ModelVersion) || len(got.all(tag("math"))) == 0 {
+			t.Errorf("revision %d, %s, the same still: %s", same.revision, same.key, got.words())
+		}
 	}
 }
 

@@ -8,6 +8,7 @@ type Working struct {
 	Close   string // the address without it
 	Cell    string // the address of the figure's cell, to go back to
 	Unlike  string // why there is none
+	Anew    string // said where another model than the figure's explains it
 	Outside bool   // a curve was held flat for it
 	Solved  string // how the point was found, of a figure that it was solved for
 	Main    *WorkingStep
