@@ -59,8 +59,9 @@ func (b form) sections() []view.Section {
 
 // unused says that the rectifier's kind has no need of the part; what was typed
 // for it is kept.
-func (b form) unused(part string) bool {
-	kind := b.draft["rectifier"]
+func (b form) unused(part string) bool { return unused(b.draft["rectifier"], part) }
+
+func unused(kind, part string) bool {
 	return part == "diode" && kind != "diode" || part == "sync_switch" && kind != "synchronous"
 }
 

@@ -37,7 +37,7 @@ func (s *Server) keepRevision(w http.ResponseWriter, r *http.Request) error {
 
 // alreadyKept is the number of the last revision if it is this very one, else 0.
 func (s *sheet) alreadyKept(note string) int {
-	if s.last == nil || s.last.note != note || len(changes(s.last.entries, draftOf(s.design))) > 0 || len(profileChange(s.last.typed, s.draft)) > 0 {
+	if !s.isKept() || s.last.note != note {
 		return 0
 	}
 	return s.last.number

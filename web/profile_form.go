@@ -50,15 +50,6 @@ func (t Draft) profileText() string {
 	return text.String()
 }
 
-// profileChange is the load profile's difference, if there is one.
-func profileChange(was, now Draft) []view.Change {
-	if was.profileText() == now.profileText() {
-		return nil
-	}
-	rows := func(t Draft) string { return plural(len(t.rows(profilePath)), "row", "rows") }
-	return []view.Change{{Label: "Load profile", Href: "#part-profile", From: rows(was), To: rows(now) + ", other values"}}
-}
-
 // besides are the entries that only a draft has.
 func (t Draft) besides() Draft {
 	kept := Draft{}

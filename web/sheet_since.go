@@ -4,7 +4,6 @@ import (
 	"context"
 	"encoding/json"
 	"fmt"
-	"slices"
 	"time"
 
 	"lossbook/budget"
@@ -42,7 +41,10 @@ func (s *sheet) since(ctx context.Context) (view.Since, error) {
 	v := view.Since{Title: "No revision kept yet", Note: s.note, Send: s.address() + "/revisions"}
 	if s.last != nil {
 		v.Title = fmt.Sprintf("Since revision %d", s.last.number)
-		v.Changes = append(s.readable(changes(s.last.entries, draftOf(s.design))), profileChange(s.last.typed, s.draft)...)
+		var err error
+		if v.Changes, err = s.changes(ctx); err != nil {
+			return v, err
+		}
 		if len(v.Changes) == 0 {
 			v.Unchanged = "Nothing has changed."
 		}
@@ -82,9 +84,13 @@ func (s *sheet) effect(ctx context.Context, v *view.Since) error {
 		return err
 	}
 	was := s.last.full
+	v.EffectAt = "at full load, " + quantityOf(now.Vin, "V", 4) + " in"
+	if !pointDiffers(was, now) {
+		v.Effect = "No change of efficiency or losses"
+		return nil
+	}
 	v.Effect = signed(100*(now.Efficiency-was.Efficiency), func(x float64) string { return decimals(x, 2) }) + " points, " +
 		signed(now.Loss-was.Loss, func(x float64) string { return quantity.Show(x, "W", 2) })
-	v.EffectAt = "at full load, " + quantityOf(now.Vin, "V", 4) + " in"
 	if now.Vin != was.Vin || now.Iout != was.Iout || now.Ambient != was.Ambient || now.Vout != was.Vout {
 		v.EffectAt = "at full load, each at its own nominal input, output and ambient"
 	}
@@ -102,49 +108,4 @@ func (s *sheet) fullNow(ctx context.Context) (*Point, error) {
 		return nil, err
 	}
 	return &found.Points[0], nil
-}
-
-// changes lists the entries in which two designs differ, in the order of the
-// sheet. A curve that changed is one change.
-func changes(was, now Draft) []view.Change {
-	var list []view.Change
-	for _, e := range entriesAmong(was, now) {
-		switch {
-		case e.alike():
-		case e.field.Kind == budget.Rows:
-			list = append(list, curveChange(e.field, was, now))
-		default:
-			list = append(list, changed(e.field, e.path, e.texts[0], e.texts[1]))
-		}
-	}
-	return list
-}
-
-// readable leaves out entries that could not be read: what they will be is not
-// known yet, and their place says what is wrong.
-func (s *sheet) readable(list []view.Change) []view.Change {
-	return slices.DeleteFunc(list, func(c view.Change) bool {
-		return slices.ContainsFunc(s.wrong, func(e budget.FieldError) bool { return !e.Missing && "#f-"+e.Path == c.Href })
-	})
-}
-
-func changed(f budget.Field, path, from, to string) view.Change {
-	c := view.Change{Symbol: symbolOf(f.Symbol), Label: f.Name, From: given(worded(f, from)), To: given(worded(f, to)), Href: "#f-" + path}
-	if c.Symbol.Base == "" && f.Path != "" {
-		c.Label = labelOf(path)
-	}
-	return c
-}
-
-// given shows an entry, or that there is none.
-func given(text string) string {
-	if blank(text) {
-		return "not given"
-	}
-	return text
-}
-
-func curveChange(f budget.Field, was, now Draft) view.Change {
-	return view.Change{Label: labelOf(f.Path), Href: "#f-" + f.Path,
-		From: plural(was.shownRows(f.Path), "row", "rows"), To: plural(now.shownRows(f.Path), "row", "rows") + ", other values"}
 }

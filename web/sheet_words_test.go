@@ -113,7 +113,7 @@ func TestUnderstood(t *testing.T) {
 func TestLabels(t *testing.T) {
 	for path, want := range map[string]string{
 		"frequency": "Switching frequency", "switch.q_gd": "Switch: Miller charge", "series_resistances[1].resistance": "Copper and shunts: Resistance, row 2",
-		"inductor.core.k": "Core: Steinmetz k", "sources.switch.rds_on": "Source of Switch: On-resistance", rippleRatio: "Ripple ratio", "nobody": "nobody",
+		"inductor.core.k": "Core: Steinmetz k", "sources.switch.rds_on": "Source of Switch: On-resistance", rippleRatio: "Ripple ratio wanted", "nobody": "nobody",
 	} {
 		if got := labelOf(path); got != want {
 			t.Errorf("%s: %q, want %q", path, got, want)
@@ -126,7 +126,7 @@ func TestChanges(t *testing.T) {
 	d := sample(t, "frost")
 	was := draftOf(d)
 	now := draftOf(d)
-	if got := changes(was, now); len(got) != 0 {
+	if got := changes(was, now, nil); len(got) != 0 {
 		t.Errorf("nothing changed: %+v", got)
 	}
 	same := Draft{}
@@ -135,13 +135,13 @@ func TestChanges(t *testing.T) {
 	}
 	same["switch.rds_on"] = "0.011"
 	read, _ := same.design()
-	if got := changes(was, draftOf(read)); len(got) != 0 {
+	if got := changes(was, draftOf(read), nil); len(got) != 0 {
 		t.Errorf("11 mΩ is 0.011: %+v", got)
 	}
 	now["switch.rds_on"], now["rectifier"] = "8.5 mΩ", "synchronous"
 	now["sources.switch.rds_on"], now["inductor.ac_curve[0][1]"] = "p. 3", "1.1"
 	delete(now, "ambient")
-	got := changes(was, now)
+	got := changes(was, now, nil)
 	want := [][3]string{{"#f-rectifier", "diode", "synchronous MOSFET"}, {"#f-ambient", "45 °C", "not given"}, {"#f-switch.rds_on", "11 mΩ", "8.5 mΩ"},
 		{"#f-sources.switch.rds_on", "not given", "p. 3"}, {"#f-inductor.ac_curve", "5 rows", "5 rows, other values"}}
 	if len(got) != len(want) {

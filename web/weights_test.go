@@ -193,7 +193,7 @@ func TestProfileOnTheSheet(t *testing.T) {
 	}
 	form = p.form("entries", map[string]string{"profile[0].hours": "6"})
 	p = s.page(200, s.send("/designs/1", form, liveEdit), "6 hours")
-	if got := p.words(); !strings.Contains(got, "not a mean of percentages") || !strings.Contains(got, "cover 6 of 24 hours") || !strings.Contains(got, "Load profile 0 rows 1 row") {
+	if got := p.words(); !strings.Contains(got, "not a mean of percentages") || !strings.Contains(got, "cover 6 of 24 hours") || !strings.Contains(got, "Load profile not given 1 row, 5.893 W·h lost a day") {
 		t.Errorf("the day is not told: %s", got)
 	}
 	form = s.open(200, "/designs/1").form("entries", map[string]string{"note.revision": "first"})
