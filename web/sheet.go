@@ -18,7 +18,7 @@ type sheet struct {
 	draft     Draft               // the entries that are shown
 	design    *budget.Design      // as far as they can be read
 	wrong     []budget.FieldError // what keeps them from a budget
-	beside    []budget.FieldError // what is wrong with the load profile, which no budget needs
+	beside    []budget.FieldError // what is wrong with the load profile or the wanted ripple, which no budget needs
 	complete  *budget.Design      // the last complete state; nil if there was none
 	last      *milestone          // the last revision; nil if there is none
 	revisions []store.RevisionHead
@@ -35,6 +35,8 @@ func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, 
 	sh := &sheet{kept: kept, draft: draft, sight: g}
 	sh.design, sh.wrong = draft.design()
 	_, sh.beside = draft.profile(sh.design)
+	_, ripple := draft.ripple()
+	sh.beside = append(sh.beside, ripple...)
 	var err error
 	if len(kept.Complete) > 0 {
 		if sh.complete, err = readDesign(kept.Complete); err != nil {

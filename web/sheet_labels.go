@@ -88,7 +88,7 @@ func missingParts(errs []budget.FieldError) []view.MissingPart {
 // name alone would not tell.
 func labelOf(path string) string {
 	if path == rippleRatio {
-		return "Ripple ratio"
+		return "Ripple ratio wanted"
 	}
 	if name, ok := profileLabel(path); ok {
 		return name
