@@ -4,7 +4,6 @@ import (
 	"context"
 	"net/http"
 	"strconv"
-	"strings"
 	"time"
 
 	"lossbook/budget"
@@ -61,16 +60,8 @@ func reportModel(ctx context.Context, saved store.Revision, d *budget.Design) (v
 func ledgersOf(d *budget.Design, points []Point) (list []view.Ledger) {
 	for _, row := range byVoltage(points) {
 		p := remembered(d, points, nil, sight{vin: quantity.Format(row[0].Vin, "V")})
-		l := p.ledger("", nil)
-		l.Caption, _, _ = strings.Cut(l.Caption, "; a figure opens")
-		for _, lines := range [][]view.LedgerLine{l.Lines, l.Foot} {
-			for _, line := range lines {
-				for i := range line.Cells {
-					line.Cells[i].Working = view.Link{} // nothing opens on paper
-				}
-			}
-		}
-		list = append(list, *l)
+		p.paper = true
+		list = append(list, *p.ledger("", nil))
 	}
 	return list
 }

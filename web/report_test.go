@@ -110,8 +110,19 @@ func TestReportPage(t *testing.T) {
 			t.Errorf("the report lacks %q", want)
 		}
 	}
-	if got := len(p.all(withClass("ledger"))); got != 3 {
-		t.Errorf("%d ledgers", got)
+	ledgers := p.all(withClass("ledger"))
+	if len(ledgers) != 3 {
+		t.Errorf("%d ledgers", len(ledgers))
+	}
+	for _, l := range ledgers { // nothing opens on paper, and nothing says that it would
+		table := page{t, l, 200}
+		caption := words(table.all(tag("caption"))[0])
+		if len(table.all(tag("a"))) > 0 || !strings.HasSuffix(caption, " in, 45 °C; shade: share of the column’s loss") {
+			t.Errorf("%d links in the ledger %q", len(table.all(tag("a"))), caption)
+		}
+	}
+	if caption := words(s.open(200, "/designs/1/revisions/2").all(tag("caption"))[0]); !strings.Contains(caption, "share of the column’s loss ; a figure opens how it came about") {
+		t.Errorf("on screen: %q", caption)
 	}
 	if n := len(p.all(tag("loss-chart"))); n != 2 {
 		t.Errorf("%d charts", n)

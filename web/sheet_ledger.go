@@ -65,7 +65,10 @@ func (u watts) write(power float64) string {
 func (p *picture) ledger(base string, take []view.Link) *view.Ledger {
 	unit := wattsFor(p.columns)
 	l := &view.Ledger{Take: take, Caption: unit.unit + " at " + quantityOf(p.spot.vin, "V", 4) + " in, " +
-		degreesCelsius(p.spot.ambient) + "; shade: share of the column’s loss; a figure opens how it came about"}
+		degreesCelsius(p.spot.ambient) + "; shade: share of the column’s loss"}
+	if !p.paper {
+		l.Opens = "a figure opens how it came about"
+	}
 	for i, q := range p.columns {
 		share := loadShare(q.Iout / p.design.Output.Current.V)
 		l.Columns = append(l.Columns, view.Link{Text: share, Href: p.spot.atLoad(share).address(base), Here: i == p.spot.load})

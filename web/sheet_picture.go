@@ -16,6 +16,7 @@ type picture struct {
 	columns  []Point // over the load grid, at the voltage looked at
 	lines    []line
 	findings []Finding
+	paper    bool    // nothing is opened from it
 	energy   *Energy // of the load profile; nil where there is none
 	model    string  // which a revision was saved with; "" of a sheet
 	worked   string  // which model the profile was worked with, where it is another than that of the rest

@@ -140,6 +140,9 @@ func (g group) key() string { return strings.TrimPrefix(g.class, "p-") }
 
 // openers lead from the cells of a row to how each figure came about.
 func (p *picture) openers(cells []view.LedgerCell, key, unit, base string) {
+	if p.paper {
+		return
+	}
 	for i, q := range p.columns {
 		if !q.Settled() {
 			continue

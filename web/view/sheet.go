@@ -116,6 +116,7 @@ type Line struct {
 // Ledger is the table of loss items by load.
 type Ledger struct {
 	Caption string // "mW at 12 V in, 45 °C; shade: share of the column's loss"
+	Opens   string // said of its figures where they lead to their working
 	Take    []Link // files
 	Paper   Link   // the same for printing
 	Columns []Link // the loads
