@@ -104,7 +104,11 @@ func (s *Server) completeDraft(r *http.Request) (*budget.Design, error) {
 	if err != nil {
 		return nil, err
 	}
-	design, wrong := draft.design()
+	return draft.complete()
+}
+
+func (t Draft) complete() (*budget.Design, error) {
+	design, wrong := t.design()
 	if len(wrong) > 0 {
 		return nil, invalid(wrong)
 	}

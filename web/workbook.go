@@ -2,6 +2,7 @@ package web
 
 import (
 	"bytes"
+	"context"
 	"fmt"
 	"net/http"
 	"regexp"
@@ -20,6 +21,7 @@ type workbook struct {
 	design     *budget.Design
 	points     []Point
 	findings   []Finding
+	energy     *Energy     // of the load profile; nil where there is none
 	provenance [][2]string // what it is of, and where that comes from
 }
 
@@ -30,18 +32,25 @@ func savedXLSX(find finder) handler {
 		if err != nil {
 			return err
 		}
-		return writeSavedWorkbook(w, saved, design)
+		return writeSavedWorkbook(r.Context(), w, saved, design)
 	}
 }
 
-func writeSavedWorkbook(w http.ResponseWriter, saved store.Revision, design *budget.Design) error {
+func writeSavedWorkbook(ctx context.Context, w http.ResponseWriter, saved store.Revision, design *budget.Design) error {
 	points, findings, err := savedResults(saved)
 	if err != nil {
 		return err
 	}
-	book := workbook{design, points, findings, [][2]string{
+	book := workbook{design: design, points: points, findings: findings, provenance: [][2]string{
 		{"Revision", fmt.Sprint(saved.Number)}, {"Kept", saved.CreatedAt.Format(time.RFC3339)}, {"Note", saved.Note},
 		{"Figures", "as they were kept with the revision"}, {"Model version", saved.Model}, {"Content, SHA-256", saved.Hash}}}
+	var worked string
+	if book.energy, worked, err = savedEnergy(ctx, saved, design); err != nil {
+		return err
+	}
+	if worked != "" {
+		book.provenance = append(book.provenance, [2]string{"Load profile", worked})
+	}
 	return book.write(w, fileName(design.Name, saved.Number, "efficiency.xlsx"))
 }
 
@@ -51,7 +60,11 @@ func (s *Server) draftXLSX(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	design, err := s.completeDraft(r)
+	draft, err := readDraft(kept.Draft)
+	if err != nil {
+		return err
+	}
+	design, err := draft.complete()
 	if err != nil {
 		return err
 	}
@@ -62,9 +75,12 @@ func (s *Server) draftXLSX(w http.ResponseWriter, r *http.Request) error {
 	if len(wrong) > 0 {
 		return invalid(wrong)
 	}
-	book := workbook{design, found.Points, found.Findings, [][2]string{
+	book := workbook{design: design, points: found.Points, findings: found.Findings, provenance: [][2]string{
 		{"Revision", "none: a draft"}, {"Last changed", kept.UpdatedAt.Format(time.RFC3339)},
 		{"Figures", "computed for this file"}, {"Model version", budget.ModelVersion}}}
+	if book.energy, err = draft.energy(r.Context(), design); err != nil {
+		return err
+	}
 	return book.write(w, fileName(design.Name, 0, "efficiency.xlsx"))
 }
 
@@ -84,10 +100,7 @@ func (b *workbook) bytes() ([]byte, error) {
 	if err := file.SetDocProps(&excelize.DocProperties{Creator: "Lossbook", LastModifiedBy: "Lossbook", Title: textCell(b.design.Name)}); err != nil {
 		return nil, err
 	}
-	for i, sheet := range []struct {
-		name string
-		fill func(*tabSheet)
-	}{{"Inputs", b.inputs}, {"Ledger", b.ledger}, {"Efficiency", b.efficiency}, {"Findings", b.reported}, {"Provenance", b.origin}} {
+	for i, sheet := range b.sheets() {
 		l, err := newTabSheet(file, i, sheet.name)
 		if err != nil {
 			return nil, err
@@ -99,6 +112,20 @@ func (b *workbook) bytes() ([]byte, error) {
 	var body bytes.Buffer
 	_, err := file.WriteTo(&body)
 	return body.Bytes(), err
+}
+
+// namedSheet is a sheet and what fills it.
+type namedSheet struct {
+	name string
+	fill func(*tabSheet)
+}
+
+func (b *workbook) sheets() []namedSheet {
+	list := []namedSheet{{"Inputs", b.inputs}, {"Ledger", b.ledger}, {"Efficiency", b.efficiency}, {"Weighted", b.weighted}}
+	if b.energy != nil {
+		list = append(list, namedSheet{"Load profile", b.day})
+	}
+	return append(list, namedSheet{"Findings", b.reported}, namedSheet{"Provenance", b.origin})
 }
 
 // tabSheet is one sheet of a workbook, filled line by line. Its first error stays, and
@@ -191,6 +218,7 @@ func (b *workbook) efficiency(l *tabSheet) {
 	}
 	if chart := b.curves(); len(chart.Series) > 0 {
 		l.keep(l.file.AddChart(l.name, fmt.Sprintf("A%d", l.row+3), chart))
+		numbersAcross(l.file)
 	}
 }
 

@@ -1,6 +1,7 @@
 package web
 
 import (
+	"bytes"
 	"fmt"
 	"math"
 
@@ -93,6 +94,39 @@ func (b *workbook) ledger(l *tabSheet) {
 	}
 }
 
+// weighted is the means over loads, for each input voltage, with the weight of each
+// load and the source of the weights.
+func (b *workbook) weighted(l *tabSheet) {
+	l.head([]float64{8, 10, 24, 12, 70, 40, 70}, "vin_V", "ambient_C", "figure", "efficiency", "weights", "why_none", "source")
+	for _, v := range weightedVoltages(b.points, b.design.Output.Current.V) {
+		for _, m := range v.Means {
+			l.line(v.Vin, v.Ambient, m.Name, numberOrNone(m.Efficiency), m.words(), m.Reason, m.Source)
+		}
+	}
+}
+
+// day is the rows of the load profile with their energies, and their sum.
+func (b *workbook) day(l *tabSheet) {
+	l.head([]float64{8, 10, 8, 10, 8, 14, 14, 14, 12, 60}, "row", "iout_A", "vin_V", "ambient_C", "hours", "in_Wh", "out_Wh", "lost_Wh", "efficiency", "why_none")
+	for i, r := range b.energy.Rows {
+		var efficiency any
+		if r.In != nil && *r.In > 0 {
+			efficiency = *r.Out / *r.In
+		}
+		l.line(float64(i+1), r.Iout, r.Vin, r.Ambient, r.Hours, numberOrNone(r.In), numberOrNone(r.Out), numberOrNone(r.Lost), efficiency, r.Reason)
+	}
+	e := b.energy
+	l.line("day", nil, nil, nil, e.Hours, numberOrNone(e.In), numberOrNone(e.Out), numberOrNone(e.Lost), numberOrNone(e.Efficiency), e.Reason)
+}
+
+// numberOrNone leaves a cell empty where there is no figure.
+func numberOrNone(v *float64) any {
+	if v == nil {
+		return nil
+	}
+	return *v
+}
+
 // stateInFull says how a point ended, and why if it has no figures.
 func stateInFull(q *Point) string {
 	if q.Settled() {
@@ -128,6 +162,16 @@ func (b *workbook) curves() *excelize.Chart {
 	return c
 }
 
+// numbersAcross makes the loads of the chart numbers: the library refers to them as
+// texts, which a program may set one step apart each, however far they are.
+func numbersAcross(file *excelize.File) {
+	const name = "xl/charts/chart1.xml"
+	if text, ok := file.Pkg.Load(name); ok {
+		numbers := bytes.ReplaceAll(text.([]byte), []byte("<xVal><strRef>"), []byte("<xVal><numRef>"))
+		file.Pkg.Store(name, bytes.ReplaceAll(numbers, []byte("</strRef></xVal>"), []byte("</numRef></xVal>")))
+	}
+}
+
 // lineColours are told apart in grey too; the dash helps. They are the page's own
 // colours of switch, inductor and capacitors on paper.
 var lineColours = []string{"A5402E", "34519B", "3F6D38"}
@@ -136,11 +180,13 @@ var lineColours = []string{"A5402E", "34519B", "3F6D38"}
 func series(n int, vin float64, from, to int) excelize.ChartSeries {
 	colour := lineColours[n%len(lineColours)]
 	dash := []excelize.LineDashType{excelize.LineDashSolid, excelize.LineDashDash, excelize.LineDashSysDot}[n%3]
+	paint := excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{colour}}
 	column := func(name string) string { return fmt.Sprintf("Efficiency!$%s$%d:$%s$%d", name, from, name, to) }
 	return excelize.ChartSeries{
 		Name:       fmt.Sprintf("Efficiency!$A$%d", from),
 		Categories: column("B"), Values: column("F"), // iout_A and efficiency
-		Line:   excelize.LineOptions{Width: 1.75, Dash: dash, Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{colour}}},
-		Marker: excelize.ChartMarker{Symbol: "circle", Size: 4, Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{colour}}},
+		Fill:   paint, // of the line: its own is not looked at
+		Line:   excelize.LineOptions{Type: excelize.LineSolid, Width: 1.75, Dash: dash},
+		Marker: excelize.ChartMarker{Symbol: "circle", Size: 4, Fill: paint},
 	}
 }

@@ -147,13 +147,13 @@ func TestWorkbookHoldsTheDesign(t *testing.T) {
 	d := sample(t, "frost")
 	d.Sources = map[string]string{"switch.rds_on": "p. 3", "frequency": "-1 % by its resistor", "series_resistances[1].resistance": "measured"}
 	found := computed(t, d)
-	book := workbook{d, found.Points, found.Findings, [][2]string{{"Revision", "7"}, {"Model version", budget.ModelVersion}}}
+	book := workbook{design: d, points: found.Points, findings: found.Findings, provenance: [][2]string{{"Revision", "7"}, {"Model version", budget.ModelVersion}}}
 	body, err := book.bytes()
 	if err != nil {
 		t.Fatal(err)
 	}
 	file := opened(t, body)
-	if got := strings.Join(file.GetSheetList(), " "); got != "Inputs Ledger Efficiency Findings Provenance" {
+	if got := strings.Join(file.GetSheetList(), " "); got != "Inputs Ledger Efficiency Weighted Findings Provenance" {
 		t.Errorf("sheets %s", got)
 	}
 	inputs := rowsIn(t, file, "Inputs")
@@ -234,7 +234,9 @@ func TestHostileWorkbook(t *testing.T) {
 		for i := range points {
 			points[i].Items[slices.IndexFunc(points[i].Items, func(it Item) bool { return it.Part == "layout" })].Kind = name
 		}
-		body, err := (&workbook{d, points, []Finding{{Level: "note", Message: name, Source: name}}, [][2]string{{"Note", name}}}).bytes()
+		points[7] = Point{Vin: points[7].Vin, Iout: points[7].Iout, Ambient: points[7].Ambient, State: "out_of_reach", Reason: name}
+		body, err := (&workbook{design: d, points: points, findings: []Finding{{Level: "note", Message: name, Source: name}},
+			energy: &Energy{Rows: []EnergyRow{{Reason: name}}, Reason: name}, provenance: [][2]string{{"Note", name}}}).bytes()
 		if err != nil {
 			t.Fatalf("%q: %v", name, err)
 		}
