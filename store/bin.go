@@ -80,6 +80,7 @@ func (s *Store) due(ctx context.Context, before int64) (n int, err error) {
 func purge(ctx context.Context, tx *sql.Tx, before int64) (int, error) {
 	for _, remove := range []string{
 		`DELETE FROM shares WHERE revision IN (SELECT id FROM revisions WHERE design IN (SELECT id FROM designs WHERE ` + overdue + `))`,
+		`DELETE FROM steps WHERE design IN (SELECT id FROM designs WHERE ` + overdue + `)`,
 		`DELETE FROM revisions WHERE design IN (SELECT id FROM designs WHERE ` + overdue + `)`,
 	} {
 		if _, err := tx.ExecContext(ctx, remove, before); err != nil {

@@ -43,6 +43,9 @@ func TestPurge(t *testing.T) {
 		d := create1(t, s, name)
 		save1(t, s, d, "")
 		share1(t, s, d, 1, "")
+		if _, err := s.Update(t.Context(), d.ID, d.Version, Change{Name: name, Draft: []byte(`{"a":"b"}`)}); err != nil {
+			t.Fatal(err)
+		}
 		mustRaw(t, s, `UPDATE designs SET deleted_at = ? WHERE id = ?`, time.Now().Add(-age).UnixMicro(), d.ID)
 	}
 	kept := create1(t, s, "kept")
@@ -58,13 +61,13 @@ func TestPurge(t *testing.T) {
 	if n, err := s.Purge(t.Context(), time.Now()); n != 0 || err != nil {
 		t.Errorf("again: purged %d (%v), want none", n, err)
 	}
-	var designs, revisions, links int
-	const counts = `SELECT (SELECT count(*) FROM designs), (SELECT count(*) FROM revisions), (SELECT count(*) FROM shares)`
-	if err := s.read.QueryRow(counts).Scan(&designs, &revisions, &links); err != nil {
+	var designs, revisions, links, steps int
+	const counts = `SELECT (SELECT count(*) FROM designs), (SELECT count(*) FROM revisions), (SELECT count(*) FROM shares), (SELECT count(*) FROM steps)`
+	if err := s.read.QueryRow(counts).Scan(&designs, &revisions, &links, &steps); err != nil {
 		t.Fatal(err)
 	}
-	if designs != 3 || revisions != 3 || links != 2 {
-		t.Errorf("%d designs, %d revisions and %d links left, want 3, 3 and 2", designs, revisions, links)
+	if designs != 3 || revisions != 3 || links != 2 || steps != 2 {
+		t.Errorf("%d designs, %d revisions, %d links and %d steps left, want 3, 3, 2 and 2", designs, revisions, links, steps)
 	}
 }
 

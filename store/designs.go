@@ -37,6 +37,7 @@ type Change struct {
 	Name     string
 	Draft    []byte
 	Complete []byte // nil keeps the one that is stored
+	Run      string // what is being typed: its edits in quick succession are one step to undo; "" for any other change
 }
 
 const selectDesigns = `SELECT id, name, sample, created_at, updated_at, deleted_at, version, draft, complete,
@@ -136,6 +137,11 @@ func updateDesign(ctx context.Context, tx *sql.Tx, id, version int64, c Change, 
 	}
 	if c.Name == d.Name && bytes.Equal(c.Draft, d.Draft) && bytes.Equal(c.Complete, d.Complete) {
 		return d, nil
+	}
+	if c.Name != d.Name || !bytes.Equal(c.Draft, d.Draft) {
+		if err := noteStep(ctx, tx, d, c, at); err != nil {
+			return Design{}, err
+		}
 	}
 	_, err = tx.ExecContext(ctx,
 		`UPDATE designs SET name = ?, draft = ?, complete = ?, updated_at = ?, version = version + 1 WHERE id = ?`,

@@ -24,7 +24,8 @@ const oldDatabases = "../testdata/databases"
 type contents struct {
 	Designs, Bin []Design
 	Revisions    []Revision
-	Shares       []Share `json:",omitempty"` // none in layout 1
+	Shares       []Share         `json:",omitempty"` // none in layout 1
+	Steps        map[int64]Steps `json:",omitempty"` // by design; none before layout 3
 }
 
 // Data files of every layout there has been keep opening, and say the same.
@@ -69,6 +70,10 @@ func readAll(t *testing.T, path string, known schema) string {
 	all.Designs, errs[0] = s.Designs(t.Context())
 	all.Bin, errs[1] = s.Bin(t.Context())
 	for _, d := range all.Designs {
+		if steps, err := s.Steps(t.Context(), d.ID); err != nil || steps.Undo != nil || steps.Redo != nil {
+			errs[1] = errors.Join(errs[1], err)
+			all.noteSteps(d.ID, steps)
+		}
 		for n := range d.Revisions {
 			r, err := s.Revision(t.Context(), d.ID, n+1)
 			links, err2 := s.Shares(t.Context(), d.ID, n+1)
@@ -86,6 +91,13 @@ func readAll(t *testing.T, path string, known schema) string {
 		t.Fatal(err)
 	}
 	return text.String()
+}
+
+func (c *contents) noteSteps(id int64, steps Steps) {
+	if c.Steps == nil {
+		c.Steps = map[int64]Steps{}
+	}
+	c.Steps[id] = steps
 }
 
 // writeOldDatabase never writes over one: what is there is what users have.
@@ -125,6 +137,13 @@ func fillOldDatabase(t *testing.T, path string, known schema) {
 		t.Fatal(err)
 	}
 	share1(t, s, d, 2, "")
+	d, err = s.Update(t.Context(), d.ID, d.Version, Change{Name: d.Name, Draft: []byte(`{"frequency":"200k"}`)})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, err := s.Undo(t.Context(), d.ID, d.Version); err != nil {
+		t.Fatal(err)
+	}
 	binned := create1(t, s, "in the bin")
 	save1(t, s, binned, "its revision")
 	if err := s.Delete(t.Context(), binned.ID); err != nil {

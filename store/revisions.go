@@ -91,7 +91,7 @@ func saveRevision(ctx context.Context, tx *sql.Tx, id, version int64, n NewRevis
 	if err != nil {
 		return Revision{}, err
 	}
-	return r, nil
+	return r, endRuns(ctx, tx, id)
 }
 
 func revisions(ctx context.Context, q querier, id int64) ([]RevisionHead, error) {
