@@ -41,11 +41,14 @@
     }
   });
 
-  // An edit that waited for the one before it carries the version which that one's
-  // answer brought, not the one that stood when it was typed.
+  // What waited for the answer before it is sent as the sheet then stands: with the
+  // version which that answer brought, and with the entries and rows it left.
   document.addEventListener('htmx:before:request', ({detail: {ctx}}) => {
-    const version = document.querySelector('#carried [name=version]');
-    if (version && ctx.request.body?.has?.('version')) ctx.request.body.set('version', version.value);
+    const form = ctx.request.form;
+    if (!form?.matches('[data-sheet]') || !ctx.request.body?.has?.('version')) return;
+    ctx.request.body = new URLSearchParams(new FormData(form));
+    const button = ctx.sourceElement;
+    if (button.matches('button[name]')) ctx.request.body.append(button.name, button.value);
   });
 
   // No answer

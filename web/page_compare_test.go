@@ -402,7 +402,7 @@ func keepFive(b *testing.B, server *Server) {
 		}
 		kept, err := server.store.Create(b.Context(), store.NewDesign{Name: design.Name, Draft: draft, Complete: complete})
 		if n > 0 {
-			kept, err = server.keepDraft(b.Context(), 1, int64(n), draftOf(design))
+			kept, err = server.keepDraft(b.Context(), 1, int64(n), draftOf(design), "")
 		}
 		if err == nil {
 			_, err = server.saveRevision(b.Context(), kept, "")

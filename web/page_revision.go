@@ -108,7 +108,7 @@ func (s *Server) revisionModel(r *http.Request, saved store.Revision, design *bu
 		page.Next = revisionLink(kept.ID, saved.Number+1)
 	}
 	page.Compare = append(page.Compare, besideLink(pin{kept.ID, saved.Number}))
-	page.Lost = "The draft as it stands is replaced; keep it as a revision first if you need it."
+	page.Lost = "The draft as it stands is replaced; Undo on its sheet brings it back."
 	if page.Answers.Banner != "" {
 		page.Answers.Banner += " Reopen it as the draft to see what it says now."
 	}

@@ -17,6 +17,8 @@ func pageRoutes(r chi.Router, s *Server) {
 	const design = "/designs/{id:[0-9]+}"
 	r.Get(design, s.handle(s.sheetPage))
 	r.Post(design, s.handle(s.editSheet))
+	r.Post(design+"/undo", s.handle(s.undoEdit))
+	r.Post(design+"/redo", s.handle(s.redoEdit))
 	r.Get(design+"/rename", s.handle(s.renamePage))
 	r.Post(design+"/rename", s.handle(s.renameDesign))
 	r.Post(design+"/copy", s.handle(s.copyDesign))

@@ -28,6 +28,7 @@ func (s *Server) sheetPage(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
+	sh.way, sh.show = q.Get("step"), q.Get("show")
 	v, err := sh.model(r.Context())
 	if err != nil {
 		return err
@@ -77,7 +78,13 @@ func (e edit) place() string {
 
 // take reads the form and keeps its entries as the draft. With an error the
 // sheet holds what was typed, if it could be read.
-func (s *Server) take(r *http.Request) (edit, *sheet, error) {
+func (s *Server) take(r *http.Request) (edit, *sheet, error) { return s.takeForm(r, false) }
+
+// takeExactly does so from the current version alone, even where the form holds
+// nothing new: for what goes on from the state that the page showed.
+func (s *Server) takeExactly(r *http.Request) (edit, *sheet, error) { return s.takeForm(r, true) }
+
+func (s *Server) takeForm(r *http.Request, exactly bool) (edit, *sheet, error) {
 	kept, err := s.design(r)
 	if err != nil {
 		return edit{}, nil, err
@@ -94,10 +101,10 @@ func (s *Server) take(r *http.Request) (edit, *sheet, error) {
 	if err != nil {
 		return e, nil, err
 	}
-	if maps.Equal(draft, before) { // nothing to overwrite, whichever version it came from
+	if maps.Equal(draft, before) && !exactly { // nothing to overwrite, whichever version it came from
 		e.version = kept.Version
 	}
-	saved, failed := s.keepDraft(r.Context(), kept.ID, e.version, draft)
+	saved, failed := s.keepDraft(r.Context(), kept.ID, e.version, draft, run(before, draft))
 	if failed == nil {
 		kept = saved
 	}
@@ -109,12 +116,12 @@ func (s *Server) take(r *http.Request) (edit, *sheet, error) {
 	return e, sh, failed
 }
 
-func (s *Server) keepDraft(ctx context.Context, id, version int64, t Draft) (store.Design, error) {
+func (s *Server) keepDraft(ctx context.Context, id, version int64, t Draft, run string) (store.Design, error) {
 	draft, complete, err := t.stored()
 	if err != nil {
 		return store.Design{}, err
 	}
-	return s.store.Update(ctx, id, version, store.Change{Name: nameOf(strings.TrimSpace(t["name"])), Draft: draft, Complete: complete})
+	return s.store.Update(ctx, id, version, store.Change{Name: nameOf(strings.TrimSpace(t["name"])), Draft: draft, Complete: complete, Run: run})
 }
 
 // notTaken answers an edit that was not kept: what was typed stays on the page,

@@ -23,7 +23,10 @@ type sheet struct {
 	last      *milestone          // the last revision; nil if there is none
 	revisions []store.RevisionHead
 	sight     sight
+	steps     store.Steps
 	note      string // typed for the next revision
+	way       string // how the entries came about: a step undone or redone
+	show      string // id of an entry to be in sight
 	demanded  bool   // what is missing is an error here
 	now       *Point // of the draft, at full load and nominal input, if it was computed
 }
@@ -38,6 +41,9 @@ func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, 
 	_, ripple := draft.ripple()
 	sh.beside = append(sh.beside, ripple...)
 	var err error
+	if sh.steps, err = s.store.Steps(ctx, kept.ID); err != nil {
+		return nil, err
+	}
 	if len(kept.Complete) > 0 {
 		if sh.complete, err = readDesign(kept.Complete); err != nil {
 			return nil, err
@@ -78,6 +84,9 @@ func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 	if v.Since, err = s.since(ctx); err != nil {
 		return v, err
 	}
+	if err := s.point(&v); err != nil {
+		return v, err
+	}
 	v.State = s.state(len(v.Since.Changes))
 	v.Foot = v.Name + " · " + v.State + " · " + moment(s.kept.UpdatedAt)
 	v.Heading, v.Problems = summary(bad, missing, s.demanded)
@@ -85,6 +94,21 @@ func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 		v.Page.Failed = true
 	}
 	return v, nil
+}
+
+// point puts the steps on the page, and in sight what the last one has changed, or
+// what the address asks for.
+func (s *sheet) point(v *view.Sheet) (err error) {
+	var changed string
+	if v.Steps, changed, err = s.stepsOf(); err != nil {
+		return err
+	}
+	if changed != "" {
+		v.Steps.To = spotOf(*v, changed)
+		reveal(*v, v.Steps.To, true)
+	}
+	reveal(*v, s.show, true)
+	return nil
 }
 
 // bad is everything typed that is wrong, not merely missing.

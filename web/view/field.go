@@ -21,6 +21,7 @@ type Field struct {
 	Options  []Option // of a choice
 	Curve    *Curve   // of rows; Value is unused then
 	Source   *Source  // where the value comes from
+	Unfolded bool     // where it is found, and its source, are open
 }
 
 // Source is the entry beside a value that says where it comes from.
@@ -141,6 +142,8 @@ type Rows struct {
 	Rows  []Row
 	Add   string // what its button says to the server
 	Word  string // on the button
+
+	Unfolded bool // the sources are open
 }
 
 // Row is one row of such a list: what it is called on a line of its own, which

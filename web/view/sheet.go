@@ -10,6 +10,7 @@ type Sheet struct {
 	Heading  string // of the error summary
 	Problems []Problem
 	Since    Since
+	Steps    Steps
 	Sections []Section
 	Profile  Profile
 	Whole    bool // a live answer replaces all entries: rows came or went
