@@ -1,8 +1,8 @@
 package budget
 
 import (
-	"fmt"
 	"reflect"
+	"strconv"
 	"strings"
 
 	"lossbook/budget/stage"
@@ -65,7 +65,7 @@ func topologyOptions() []Option {
 // the index named; without it a path through an absent part has no slot.
 func (d *Design) Slot(path string, create bool) (any, bool) {
 	v := reflect.ValueOf(d).Elem()
-	for _, step := range strings.Split(path, ".") {
+	for step := range strings.SplitSeq(path, ".") {
 		name, index, indexed := cutIndex(step)
 		v = member(v, name)
 		if v.IsValid() && indexed {
@@ -86,7 +86,9 @@ func cutIndex(step string) (name string, index int, indexed bool) {
 	if !ok {
 		return step, 0, false
 	}
-	if _, err := fmt.Sscanf(rest, "%d]", &index); err != nil || index < 0 || index >= MaxRows {
+	digits, _, closed := strings.Cut(rest, "]")
+	index, err := strconv.Atoi(digits)
+	if err != nil || !closed || index < 0 || index >= MaxRows {
 		return step, 0, false
 	}
 	return name, index, true
@@ -120,22 +122,32 @@ func pointee(v reflect.Value, create bool) reflect.Value {
 
 // member finds the struct field of a JSON name, embedded structs included.
 func member(v reflect.Value, name string) reflect.Value {
-	if v.Kind() != reflect.Struct {
-		return reflect.Value{}
-	}
-	for i := range v.NumField() {
-		field := v.Type().Field(i)
-		if field.Anonymous {
-			if m := member(v.Field(i), name); m.IsValid() {
-				return m
-			}
-			continue
-		}
-		if jsonName(field) == name {
-			return v.Field(i)
-		}
+	if index, ok := members[v.Type()][name]; ok {
+		return v.FieldByIndex(index)
 	}
 	return reflect.Value{}
+}
+
+// members tells where in the structs of a design each JSON name lies: a sheet asks
+// thousands of times for one answer.
+var members = map[reflect.Type]map[string][]int{}
+
+func init() { indexMembers(reflect.TypeFor[Design]()) }
+
+func indexMembers(t reflect.Type) {
+	for t.Kind() == reflect.Pointer || t.Kind() == reflect.Slice {
+		t = t.Elem()
+	}
+	if t.Kind() != reflect.Struct || members[t] != nil {
+		return
+	}
+	members[t] = map[string][]int{}
+	for _, field := range reflect.VisibleFields(t) {
+		if !field.Anonymous {
+			members[t][jsonName(field)] = field.Index
+			indexMembers(field.Type)
+		}
+	}
 }
 
 func jsonName(field reflect.StructField) string {

@@ -1,14 +1,11 @@
 package web
 
 import (
-	"bytes"
 	"math"
 	"testing"
 
-	"lossbook/assets"
 	"lossbook/budget"
 	"lossbook/web/quantity"
-	"lossbook/web/view"
 )
 
 func TestLedgerFigures(t *testing.T) {
@@ -209,29 +206,6 @@ func TestPictureAddsUp(t *testing.T) {
 		}
 		if len(p.lines[0].points) != len(loads) || len(loads) < 60 {
 			t.Errorf("%s: %d points a line", name, len(p.lines[0].points))
-		}
-	}
-}
-
-// What a posted form costs from its entries to the drawn answer, without the
-// store.
-func BenchmarkSheetAnswer(b *testing.B) {
-	raw := assets.Samples()[1].JSON
-	d, _, err := decodeDesign(raw)
-	if err != nil {
-		b.Fatal(err)
-	}
-	draft := draftOf(d)
-	for b.Loop() {
-		s := &sheet{draft: draft, complete: d}
-		s.design, s.wrong = draft.design()
-		v, err := s.model(b.Context())
-		if err != nil {
-			b.Fatal(err)
-		}
-		var body bytes.Buffer
-		if err := view.SheetAnswer(v).Render(b.Context(), &body); err != nil {
-			b.Fatal(err)
 		}
 	}
 }
