@@ -53,6 +53,9 @@ func share(list []observation, g gauge, value, rating float64, what, unit, help 
 		return list
 	}
 	g.value, g.limit = value/rating, 1
+	if !(g.value > g.limit || g.value > g.caution) { // most are in order, and need no words
+		return list
+	}
 	g.message = fmt.Sprintf("%s is %.3g %s, %.0f %% of the rated %.4g %s; %s", what, value, unit, 100*g.value, rating, unit, help)
 	return g.read(list)
 }

@@ -3,6 +3,7 @@ package web
 import (
 	"bytes"
 	"net/http"
+	"sync"
 
 	"github.com/a-h/templ"
 
@@ -24,14 +25,26 @@ func frame(title string) view.Page {
 // show draws a page whole before its first header, so that a page that fails
 // is never half of one.
 func show(w http.ResponseWriter, r *http.Request, status int, page templ.Component) error {
-	var body bytes.Buffer
-	if err := page.Render(r.Context(), &body); err != nil {
+	body := bodies.Get().(*bytes.Buffer)
+	defer letGo(body)
+	if err := page.Render(r.Context(), body); err != nil {
 		return err
 	}
 	w.Header().Set("Content-Type", "text/html; charset=utf-8")
 	w.WriteHeader(status)
 	w.Write(body.Bytes()) // an error means that nobody is there to be told
 	return nil
+}
+
+// bodies are rooms for pages to be drawn in: a sheet takes some 300 kB.
+var bodies = sync.Pool{New: func() any { return new(bytes.Buffer) }}
+
+// letGo empties a room for the next page; one that grew far beyond a sheet is not kept.
+func letGo(body *bytes.Buffer) {
+	const most = 4 << 20
+	if body.Reset(); body.Cap() <= most {
+		bodies.Put(body)
+	}
 }
 
 // live reports whether a script asks, and swaps the answer into the page.
