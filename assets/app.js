@@ -1,7 +1,7 @@
 /* Small behaviours of the pages. Everything works without them, by forms.
 
    Load order, all with defer: lib/htmx.min.js, lib/d3.min.js, lib/plot.umd.min.js,
-   chart.js, app.js. htmx is set up by <meta name="htmx-config"> (assets.HTMXConfig).
+   chart.js and its kinds, app.js. htmx is set up by <meta name="htmx-config"> (assets.HTMXConfig).
 
    Hooks in the markup:
      data-focus      takes focus on load, and after an answer to a submitted form or

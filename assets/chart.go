@@ -3,8 +3,9 @@ package assets
 import "encoding/json"
 
 // The types below are the data attribute of a <loss-chart>, to be written as
-// JSON; chart.js says how each is drawn. Lines is of the kinds "efficiency" and
-// "difference", Stack of the kind "stack". Values come in the unit that their axis names.
+// JSON; chart-lines.js and chart-stack.js say how each is drawn. Lines is of the
+// kinds "efficiency" and "difference", Stack of the kind "stack". Values come in the
+// unit that their axis names.
 
 // An Axis has a title with its unit in words ("load, % of 2 A"), and the unit
 // that follows a value read at the cursor ("%").

@@ -2,41 +2,28 @@
    lib/d3.min.js and lib/plot.umd.min.js loaded before it.
 
      <loss-chart kind="efficiency" scale="log" data="{…}" hx-morph-skip-children></loss-chart>
-     <loss-chart kind="difference" data="{…}" hx-morph-skip-children></loss-chart>
-     <loss-chart kind="stack" data="{…}" hx-morph-skip-children></loss-chart>
 
    It draws into itself, again whenever an attribute or its width changes; the page
    owns the attributes, and the chart's table beside it. Colours are variables of
    the stylesheet, so light and dark need no redraw.
 
-   The types Lines and Stack of chart.go write the data.
+   Each kind is a file that calls lossChart.kind(name, draw) and says what its data
+   holds: chart-lines.js, chart-stack.js. All data has a title (read aloud, not
+   drawn) and x and y with {label, unit}. draw(data, width, scale) returns
 
-   data, kind "efficiency" (also fits any figure against load, a line per series):
-     {"title":  "Efficiency against load",        read aloud, not drawn
-      "x":      {"label": "load, % of 2 A", "unit": "%"},
-      "y":      {"label": "efficiency, %",  "unit": "%"},
-      "series": [{"name": "12 V", "dash": 0,      0 solid, 1 dashed, 2 dotted, 3, 4 mixed
-                  "points": [[5, 91.35], [10, null], [20, 95.05, 1], …]}]}
-     Points rise in x. A null y leaves a gap. A third member 1 says that a curve
-     was held flat for this point: it is underlaid, and marked † where it is read.
-   kind "difference" takes the same; 0 is on its axis and ruled, values are signed.
-   scale: "log" (what it is without the attribute) or "lin".
-
-   data, kind "stack":
-     {"title":   "Loss against load, by part",
-      "x":       {"label": "load, % of 2 A", "unit": "%"},
-      "y":       {"label": "loss, W",        "unit": "W"},
-      "parts":   [{"name": "Switch", "cls": "p-switch"}, …],    from the bottom up
-      "columns": [{"x": "5", "values": [0.05, …], "total": "0.23", "outside": true},
-                  {"x": "100", "reason": "thermal runaway"}]}
-     Values stand in the order of the parts. A column with a reason has no bar;
-     "outside" (may be absent) marks its total with †. */
-(() => {
+     {svg,      the drawing, as wide as it was told
+      stops,    what the cursor stops at: [{x, dots, text}] from the left. x and the
+                heights of the dots are in pixels, text is what is read there
+      across,   where stops lie in rows from the top, {x, y, dots, text}: how many in
+                each row. The keys up and down then go from row to row
+      start,    the stop that the keys begin at, if it is neither of the ends
+      note,     said while nothing is pointed at
+      key,      [{name, cls}] to be set below the drawing, or []
+      empty}    words instead of a drawing, where there is nothing to draw */
+globalThis.lossChart = (() => {
   'use strict';
 
-  const dashes = [null, '7 3', '2 3', '9 3 2 3', '14 4'];
   const lineHeight = 16; // px between names, a little over the height of their letters
-  const narrow = 430; // px; below it the parts' names go under the stack, not beside it
   const number = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'negative'});
   const change = new Intl.NumberFormat('en', {maximumSignificantDigits: 4, signDisplay: 'exceptZero'});
   const hint = 'Arrow keys or pointer read the values.';
@@ -73,9 +60,8 @@
     return g.node();
   }
 
-  const frame = (width, names) => ({
-    width, height: 226, marginTop: 26, marginBottom: 42, marginLeft: 42, marginRight: names ? names + 22 : 12,
-  });
+  const margins = {marginTop: 26, marginBottom: 42, marginLeft: 42};
+  const frame = (width, names) => ({width, height: 226, ...margins, marginRight: names ? names + 22 : 12});
 
   // The axes are drawn by hand: ticks and formats given to a scale don't reach them.
   const axes = (data, x, y) => [
@@ -86,128 +72,7 @@
       text: (t) => x.ticks ? digits(t) : t}),
   ];
 
-  // 1, 2 and 5 of each decade, and the domain's own ends where they have room.
-  function logTicks([low, high]) {
-    const inside = [];
-    for (let decade = 10 ** Math.floor(Math.log10(low)); decade <= high; decade *= 10) {
-      inside.push(...[1, 2, 5].map((m) => m * decade).filter((t) => t > low * 1.2 && t < high / 1.2));
-    }
-    return [low, ...inside, high];
-  }
-
-  function xScale(points, scale) {
-    const [low, high] = d3.extent(points, (p) => p[0]);
-    return scale === 'lin' || !(low > 0) || low === high
-      ? {type: 'linear', domain: [0, high], ticks: d3.ticks(0, high, 6)}
-      : {type: 'log', domain: [low, high], ticks: logTicks([low, high])};
-  }
-
-  function yScale(points, always) {
-    const [low, high] = d3.extent(points.filter((p) => p[1] !== null).map((p) => p[1]).concat(always));
-    const spread = high > low ? [low, high] : [low - 1, high + 1];
-    const domain = d3.nice(...spread, 5);
-    return {domain, ticks: d3.ticks(...domain, 5)};
-  }
-
-  // A point between two gaps has no line; it is drawn as a dot.
-  const alone = (points) => points.filter((p, i) =>
-    p[1] !== null && (points[i - 1]?.[1] ?? null) === null && (points[i + 1]?.[1] ?? null) === null);
-
-  function seriesMarks({points, dash}) {
-    const at = {x: (p) => p[0], y: (p) => p[1]};
-    const held = {...at, y: (p) => p[2] ? p[1] : null, stroke: 'var(--mark)', strokeOpacity: 0.3, strokeWidth: 7};
-    return [
-      Plot.line(points, held),
-      Plot.line(points, {...at, stroke: 'var(--ink)', strokeWidth: 1.8, strokeDasharray: dashes[dash % dashes.length]}),
-      Plot.dot(alone(points), {...at, r: 2.2, fill: 'var(--ink)'}),
-    ];
-  }
-
-  function seriesNames(series) {
-    return (_, {x, y}, __, dimensions) => drawNames(series.flatMap((s) => {
-      const last = s.points.findLast((p) => p[1] !== null);
-      return last ? [{name: s.name, x: x(last[0]), y: y(last[1]), colour: 'var(--dim)', weight: 0.8}] : [];
-    }), dimensions);
-  }
-
-  const figure = (p, unit, form) => p[1] === null ? 'no figure' : quantity(p[1], unit, form) + (p[2] ? '†' : '');
-
-  // What the cursor stops at: one entry per load, its place and what it reads.
-  function seriesStops(data, svg, form) {
-    const x = svg.scale('x'), y = svg.scale('y');
-    const loads = d3.union(...data.series.map((s) => s.points.map((p) => p[0])));
-    return Array.from(loads).sort(d3.ascending).map((load) => {
-      const hits = data.series.map((s) => [s.name, s.points.find((p) => p[0] === load) ?? [load, null]]);
-      const text = hits.map(([name, p]) => `${name}: ${figure(p, data.y.unit, form)}`);
-      const dots = hits.filter(([, p]) => p[1] !== null).map(([, p]) => y.apply(p[1]));
-      return {x: x.apply(load), dots, text: `at ${quantity(load, data.x.unit)} — ${text.join(', ')}`};
-    });
-  }
-
-  const drawEfficiency = (data, width, scale) => drawLines(data, width, scale, [], number);
-  const drawDifference = (data, width, scale) => drawLines(data, width, scale, [0], change);
-
-  // always: values that the axis holds besides those of the lines, each ruled.
-  function drawLines(data, width, scale, always, form) {
-    const points = data.series.flatMap((s) => s.points);
-    if (!points.some((p) => p[1] !== null)) return {empty: 'No load here has a figure.'};
-    const x = xScale(points, scale), y = {...yScale(points, always), form};
-    const marks = [...axes(data, x, y), Plot.ruleY(always, {stroke: 'var(--edge)'}), ...data.series.flatMap(seriesMarks), seriesNames(data.series)];
-    const svg = Plot.plot({...frame(width, widest(data.series.map((s) => s.name))), x, y, marks});
-    const note = points.some((p) => p[2]) ? '† underlaid: a curve held flat outside its range.' : '';
-    return {svg, note, stops: seriesStops(data, svg, form)};
-  }
-
-  // The parts of one column, piled up: [{part, x, low, high, fill}].
-  function pile(parts, column) {
-    let low = 0;
-    return (column.values ?? []).map((value, i) => {
-      const segment = {part: parts[i].name, x: column.x, low, high: low + value, fill: partFill(parts[i].cls)};
-      low = segment.high;
-      return segment;
-    });
-  }
-
-  function partNames(segments) {
-    return (_, {x, y}, __, dimensions) => drawNames(segments.filter((s) => s.high > s.low).map((s) => ({
-      name: s.part, x: x(s.x) + x.bandwidth(), y: y((s.low + s.high) / 2), colour: s.fill, weight: 2,
-    })), dimensions);
-  }
-
-  function stackStops(data, svg) {
-    const x = svg.scale('x'), unit = data.y.unit;
-    return data.columns.map((column) => {
-      const shares = column.values?.map((v, i) => `${data.parts[i].name} ${digits(v)}`).join(', ');
-      const told = column.reason ?? `${column.total}\u00a0${unit}${column.outside ? '†' : ''}: ${shares}`;
-      return {x: x.apply(column.x) + x.bandwidth / 2, dots: [], text: `at ${column.x}\u00a0${data.x.unit} — ${told}`};
-    });
-  }
-
-  function drawStack(data, width) {
-    const settled = data.columns.filter((c) => !c.reason);
-    const segments = settled.map((c) => pile(data.parts, c));
-    const beside = width >= narrow && settled.length > 0;
-    const highest = Math.max(...segments.map((s) => s.at(-1)?.high ?? 0), 0) || 1;
-    const total = (c) => c.total + (c.outside ? '†' : '');
-    const x = {type: 'band', domain: data.columns.map((c) => c.x), padding: 0.22};
-    const y = {domain: [0, highest], ticks: d3.ticks(0, highest, 4)};
-    const reason = {x: 'x', y: 0, text: 'reason', rotate: -90, textAnchor: 'start', dy: -6, fill: 'var(--ink)', stroke: 'var(--bg)', strokeWidth: 5};
-    const svg = Plot.plot({
-      ...frame(width, beside ? widest(data.parts.map((p) => p.name)) : 0),
-      x, y, color: {type: 'identity'},
-      marks: [
-        ...axes(data, x, y),
-        Plot.barY(segments.flat(), {x: 'x', y1: 'low', y2: 'high', fill: 'fill', stroke: 'var(--bg)', strokeWidth: 1}),
-        Plot.text(settled, {x: 'x', y: (c) => d3.sum(c.values), text: total, dy: -8}),
-        beside ? partNames(segments.at(-1)) : null,
-        Plot.text(data.columns.filter((c) => c.reason), reason),
-      ],
-    });
-    const note = settled.some((c) => c.outside) ? '† a curve held flat outside its range.' : '';
-    return {svg, note, stops: stackStops(data, svg), key: beside ? [] : data.parts};
-  }
-
-  const drawings = {efficiency: drawEfficiency, difference: drawDifference, stack: drawStack};
+  const drawings = new Map();
 
   function make(tag, attributes, text = '') {
     const element = document.createElement(tag);
@@ -227,6 +92,8 @@
     #frame = 0; // the animation frame a drawing is asked for in; 0: none
     #cursor = -1; // index into #stops; -1: none
     #stops = [];
+    #across = 0; // stops in a row; 0: all lie in one
+    #start = -1; // where the keys begin; -1: at the ends
     #note = '';
 
     constructor() {
@@ -250,6 +117,8 @@
 
     attributeChangedCallback() { this.#schedule(); }
 
+    redraw() { this.#schedule(); }
+
     // Several attributes change in one morph; they are drawn once, before the paint.
     #schedule() {
       this.#frame ||= requestAnimationFrame(() => {
@@ -260,9 +129,13 @@
 
     #draw() {
       this.#width = this.clientWidth;
+      const draw = drawings.get(this.getAttribute('kind'));
+      if (!draw) return; // its file is still to come
       const data = JSON.parse(this.getAttribute('data'));
-      const drawn = drawings[this.getAttribute('kind')](data, this.#width, this.getAttribute('scale'));
+      const drawn = draw(data, this.#width, this.getAttribute('scale'));
       this.#stops = drawn.stops ?? [];
+      this.#across = drawn.across ?? 0;
+      this.#start = drawn.start ?? -1;
       this.#note = drawn.note ?? '';
       this.#pane.setAttribute('aria-label', `${data.title}: ${hint}`);
       this.#pane.replaceChildren(drawn.svg ? labelled(drawn.svg, data) : make('p', {class: 'empty'}, drawn.empty));
@@ -271,20 +144,34 @@
     }
 
     #press(event) {
-      const last = this.#stops.length - 1;
-      const to = {
-        ArrowLeft: this.#cursor < 0 ? last : this.#cursor - 1, ArrowRight: this.#cursor + 1,
-        PageUp: this.#cursor - 10, PageDown: this.#cursor + 10, Home: 0, End: last,
-      }[event.key];
       if (event.key === 'Escape') this.#move(-1);
-      if (to === undefined || last < 0 || event.ctrlKey || event.altKey || event.metaKey) return;
+      const to = this.#cursor < 0 ? this.#first(event.key) : this.#next(event.key);
+      if (to === undefined || !this.#stops.length || event.ctrlKey || event.altKey || event.metaKey) return;
       event.preventDefault();
-      this.#move(Math.max(0, Math.min(last, to)));
+      this.#move(to);
+    }
+
+    #first(key) {
+      const last = this.#stops.length - 1, forth = this.#start < 0 ? 0 : this.#start, back = this.#start < 0 ? last : this.#start;
+      return {ArrowLeft: back, ArrowRight: forth, PageUp: 0, PageDown: Math.min(9, last), Home: 0, End: last,
+        ...(this.#across && {ArrowUp: back, ArrowDown: forth, PageDown: forth, PageUp: back})}[key];
+    }
+
+    #next(key) {
+      const across = this.#across || this.#stops.length, column = this.#cursor % across, row = (this.#cursor - column) / across;
+      const rows = this.#stops.length / across, many = this.#across ? 0 : 10;
+      const go = {
+        ArrowLeft: [-1, 0], ArrowRight: [1, 0], Home: [-across, 0], End: [across, 0], PageUp: [-many, -10], PageDown: [many, 10],
+        ...(this.#across && {ArrowUp: [0, -1], ArrowDown: [0, 1]}),
+      }[key];
+      const within = (i, n) => Math.max(0, Math.min(n - 1, i));
+      return go && within(row + go[1], rows) * across + within(column + go[0], across);
     }
 
     #point(event) {
-      const x = event.clientX - this.#pane.getBoundingClientRect().left;
-      this.#move(d3.leastIndex(this.#stops, (a, b) => Math.abs(a.x - x) - Math.abs(b.x - x)) ?? -1);
+      const box = this.#pane.getBoundingClientRect(), x = event.clientX - box.left, y = event.clientY - box.top;
+      const far = (stop) => Math.hypot(stop.x - x, this.#across ? stop.y - y : 0);
+      this.#move(d3.leastIndex(this.#stops, (a, b) => far(a) - far(b)) ?? -1);
     }
 
     #move(index) {
@@ -296,7 +183,8 @@
       svg.selectAll('.cursor').remove();
       if (!stop || svg.empty()) return;
       const g = svg.append('g').attr('class', 'cursor');
-      g.append('path').attr('d', `M${stop.x} 26V${svg.attr('height') - 42}`);
+      const foot = svg.attr('height') - margins.marginBottom;
+      g.append('path').attr('d', this.#across ? `M${margins.marginLeft} ${stop.y}H${stop.x}V${foot}` : `M${stop.x} ${margins.marginTop}V${foot}`);
       g.selectAll('circle').data(stop.dots).join('circle').attr('cx', stop.x).attr('cy', (y) => y).attr('r', 3.5);
     }
   }
@@ -316,4 +204,12 @@
   }
 
   customElements.define('loss-chart', LossChart);
+
+  // Says how a kind of chart is drawn.
+  function kind(name, draw) {
+    drawings.set(name, draw);
+    for (const chart of document.querySelectorAll('loss-chart')) if (chart.getAttribute('kind') === name) chart.redraw();
+  }
+
+  return {kind, number, change, digits, quantity, widest, partFill, drawNames, frame, axes};
 })();
