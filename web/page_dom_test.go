@@ -119,6 +119,9 @@ func (p page) title() string { return words(p.all(tag("title"))[0]) }
 func (p page) row(heading string) []string {
 	p.t.Helper()
 	for _, tr := range p.all(tag("tr")) {
+		if within(tr, withClass("flow")) {
+			continue
+		}
 		var cells []string
 		match := false
 		for c := range tr.ChildNodes() {
@@ -157,9 +160,11 @@ func (p page) form(id string, changes map[string]string) url.Values {
 	return v
 }
 
-func inTemplate(n *html.Node) bool {
+func inTemplate(n *html.Node) bool { return within(n, tag("template")) }
+
+func within(n *html.Node, holds func(*html.Node) bool) bool {
 	for p := n.Parent; p != nil; p = p.Parent {
-		if p.Data == "template" {
+		if holds(p) {
 			return true
 		}
 	}

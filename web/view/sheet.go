@@ -63,6 +63,7 @@ type Answers struct {
 	Banner   string    // of a revision whose recomputation differs
 	Views    Views
 	Head     *Head
+	Flow     *Flow
 	Charts   []Chart
 	Ledger   *Ledger
 	Working  *Working
