@@ -16,8 +16,12 @@ func (p *picture) answers(base string, typed bool, take []view.Link) (view.Answe
 	if err != nil {
 		return view.Answers{}, err
 	}
+	waves, err := p.waves()
+	if err != nil {
+		return view.Answers{}, err
+	}
 	a := view.Answers{Views: p.spot.views(p.design, base, typed, p.vins), Head: p.head(), Flow: p.flow(), Charts: charts, Ledger: p.ledger(base, take),
-		Working: p.working(base), Weights: p.weights()}
+		Working: p.working(base), Waves: waves, Weights: p.weights()}
 	for _, f := range findingLines(p.findings) {
 		if f.Level == string(budget.Note) {
 			a.Notes = append(a.Notes, f)

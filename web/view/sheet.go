@@ -67,6 +67,7 @@ type Answers struct {
 	Charts   []Chart
 	Ledger   *Ledger
 	Working  *Working
+	Waves    *Waves
 	Weights  *Weights
 	Warnings []Finding // exceeded ratings and cautions, worst first
 	Notes    []Finding
