@@ -59,8 +59,8 @@ func tokens(t *testing.T) map[string]map[string]colour {
 		schemes["light"][m[1]] = parseColour(t, m[2])
 		schemes["dark"][m[1]] = parseColour(t, m[3])
 	}
-	if len(schemes["light"]) != 14 {
-		t.Errorf("%d colours read, want 14: has the way they are written changed?", len(schemes["light"]))
+	if len(schemes["light"]) != 24 {
+		t.Errorf("%d colours read, want 24: has the way they are written changed?", len(schemes["light"]))
 	}
 	return schemes
 }
@@ -118,6 +118,31 @@ func TestContrastOnShades(t *testing.T) {
 			ground := colours[name].over(colours["bg"], deepest/100)
 			if got := contrast(colours["ink"], ground); got < 4.5 {
 				t.Errorf("%s: ink on s10 of %s has %.2f, want 4.5", scheme, name, got)
+			}
+		}
+	}
+}
+
+// What is drawn and written on the map's shades is seen on each of them, and the
+// shades step away from the ground by their lightness alone.
+func TestContrastOnTheMap(t *testing.T) {
+	for scheme, colours := range tokens(t) {
+		before := contrast(colours["m0"], colours["bg"])
+		for i := range 10 {
+			name := fmt.Sprintf("m%d", i)
+			for on, least := range map[string]float64{"ink": 4.5, "mark": 3} {
+				if got := contrast(colours[on], colours[name]); got < least {
+					t.Errorf("%s: %s on %s has %.2f, want %v", scheme, on, name, got, least)
+				}
+			}
+			if i == 0 {
+				continue
+			}
+			step := contrast(colours[name], colours[fmt.Sprintf("m%d", i-1)])
+			if away := contrast(colours[name], colours["bg"]); step < 1.04 || i > 1 && away < before {
+				t.Errorf("%s: %s steps by %.3f from the one before, to %.2f off the ground", scheme, name, step, away)
+			} else {
+				before = away
 			}
 		}
 	}

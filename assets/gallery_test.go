@@ -24,6 +24,7 @@ type row struct {
 type galleryData struct {
 	HTMXConfig        string
 	Efficiency, Stack template.HTMLAttr
+	Difference, Map   template.HTMLAttr
 	Loads             []int
 	Rows              []row
 }
@@ -35,6 +36,7 @@ var loads = []int{5, 10, 20, 25, 30, 50, 75, 100}
 func gallery() galleryData {
 	return galleryData{
 		HTMXConfig: HTMXConfig, Efficiency: dataAttribute(efficiencyData()), Stack: dataAttribute(stackData("0.23")),
+		Difference: dataAttribute(differenceData()), Map: dataAttribute(mapData()),
 		Loads: loads, Rows: galleryRows(),
 	}
 }
@@ -66,6 +68,62 @@ func efficiencyData() Lines {
 		Y:      Axis{Label: "efficiency, %", Unit: "%"},
 		Series: []Line{line("12 V", 0, 1.5), line("14.4 V", 1, 0.8), line("10.5 V", 2, 1.7)},
 	}
+}
+
+// differenceData crosses 0, touches it, and has a gap next to a lone point.
+func differenceData() Lines {
+	line := func(name string, dash int, at, slope float64) Line {
+		l := Line{Name: name, Dash: dash}
+		for i, load := range loads {
+			l.Points = append(l.Points, Point{X: float64(load), Y: at + slope*float64(load), None: dash == 1 && i%2 == 0, Outside: dash == 2 && load > 50})
+		}
+		return l
+	}
+	return Lines{
+		Title: "Efficiency against revision 1", X: Axis{Label: "load, % of 2 A", Unit: "%"}, Y: Axis{Label: "difference, percentage points", Unit: "points"},
+		Series: []Line{line("revision 2", 0, -0.4, 0.008), line("revision 3", 1, 0.003, 0), line("revision 4, “<i>” a long one", 2, 0.42, -0.009)},
+	}
+}
+
+const mapAcross, mapUp = 40, 30
+
+// mapData has everything at once: points out of reach below, a part that runs away in
+// a corner, a limit exceeded at the right and one near it, a curve held flat.
+func mapData() Map {
+	m := Map{
+		Title: "Efficiency over load and input voltage", X: Axis{Label: "load, % of 2 A", Unit: "%"}, Y: Axis{Label: "input, V", Unit: "V"},
+		Value: Axis{Label: "efficiency, %", Unit: "%"}, Loss: Axis{Label: "loss, W", Unit: "W"}, Here: &[2]float64{50, 24},
+	}
+	for x := range mapAcross {
+		m.Loads = append(m.Loads, 5*math.Pow(20, float64(x)/(mapAcross-1)))
+	}
+	for y := range mapUp {
+		m.Vins = append(m.Vins, 9+float64(y))
+	}
+	settled := func(i int) bool { x, y := i%mapAcross, i/mapAcross; return y >= 4 && !(x >= 36 && y < 8) }
+	for i := range mapAcross * mapUp {
+		if !settled(i) {
+			m.Values, m.Losses = append(m.Values, nil), append(m.Losses, nil)
+			continue
+		}
+		load := m.Loads[i%mapAcross] / 100
+		loss := 0.2 + 0.01*m.Vins[i/mapAcross] + 1.6*load*load
+		value := math.Round(1e5*24*load/(24*load+loss)) / 1e3
+		m.Values, m.Losses = append(m.Values, &value), append(m.Losses, &loss)
+	}
+	area := func(name, level string, holds func(x, y int) bool) MapArea {
+		return MapArea{name, level, RunsOf(mapAcross*mapUp, func(i int) bool {
+			return holds(i%mapAcross, i/mapAcross) && settled(i) == (level == "exceeded" || level == "caution")
+		})}
+	}
+	m.Outside = RunsOf(mapAcross*mapUp, func(i int) bool { return i%mapAcross == 0 && settled(i) })
+	m.Unsettled = []MapArea{area("out of reach", "out_of_reach", func(_, y int) bool { return y < 4 }), area("switch runs away", "runaway", func(_, y int) bool { return y >= 4 })}
+	m.Limits = []MapArea{
+		area("rectifier, junction temperature", "exceeded", func(x, y int) bool { return x+y/2 > 34 }),
+		area("<i>switch</i>, blocking voltage", "exceeded", func(x, y int) bool { return y > mapUp-3 && x < 4 }),
+		area("inductor, saturation", "caution", func(x, _ int) bool { return x > 24 }),
+	}
+	return m
 }
 
 func stackData(firstTotal string) Stack {

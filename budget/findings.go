@@ -29,21 +29,20 @@ type gauge struct {
 	limit              float64
 	unit               string
 	source             string
-	message            string // what it is and what helps
+	message            func() string // what it is and what helps; asked for if it is to be said
 }
 
 // read returns an observation when the value is beyond the caution.
 func (g gauge) read(list []observation) []observation {
-	o := observation{Finding{Part: g.part, Rule: g.rule, Value: g.value, Limit: g.limit, Unit: g.unit, Source: g.source, Message: g.message}, g.aspect, g.value}
+	level := Caution
 	switch {
 	case g.value > g.limit:
-		o.Level = Exceeded
-	case g.value > g.caution:
-		o.Level = Caution
-	default:
+		level = Exceeded
+	case !(g.value > g.caution):
 		return list
 	}
-	return append(list, o)
+	return append(list, observation{Finding{Level: level, Part: g.part, Rule: g.rule, Value: g.value, Limit: g.limit, Unit: g.unit, Source: g.source,
+		Message: g.message()}, g.aspect, g.value})
 }
 
 // share is a gauge of a value over its rating: caution at the share, exceeded above
@@ -53,10 +52,10 @@ func share(list []observation, g gauge, value, rating float64, what, unit, help 
 		return list
 	}
 	g.value, g.limit = value/rating, 1
-	if !(g.value > g.limit || g.value > g.caution) { // most are in order, and need no words
-		return list
+	percent := 100 * g.value
+	g.message = func() string {
+		return fmt.Sprintf("%s is %.3g %s, %.0f %% of the rated %.4g %s; %s", what, value, unit, percent, rating, unit, help)
 	}
-	g.message = fmt.Sprintf("%s is %.3g %s, %.0f %% of the rated %.4g %s; %s", what, value, unit, 100*g.value, rating, unit, help)
 	return g.read(list)
 }
 
@@ -95,7 +94,7 @@ func plain(list []observation) []Finding {
 	slices.SortStableFunc(list, func(a, b observation) int { return rank(a.Level) - rank(b.Level) })
 	findings := make([]Finding, len(list))
 	for i, o := range list {
-		findings[i] = o.Finding
+		findings[i], findings[i].Aspect = o.Finding, o.aspect
 	}
 	return findings
 }

@@ -11,7 +11,7 @@ func TestGauge(t *testing.T) {
 	up := func(x float64) float64 { return math.Nextafter(x, 9) }
 	for value, level := range map[float64]Level{0: "", 0.8: "", up(0.8): Caution, 1: Caution, up(1): Exceeded} {
 		var list []Finding
-		for _, o := range (gauge{value: value, caution: 0.8, limit: 1, message: "words", source: practice}).read(nil) {
+		for _, o := range (gauge{value: value, caution: 0.8, limit: 1, message: func() string { return "words" }, source: practice}).read(nil) {
 			list = append(list, o.Finding)
 		}
 		expect(t, "gauge", list, level)

@@ -47,7 +47,9 @@ func junction(m *Model, b *Budget, s *situation) (list []observation) {
 	for part := switchHeat; part <= rectifierHeat; part++ {
 		t, limit := s.temperature[part], m.limits()[part]
 		list = gauge{part: partNames[part], rule: "junction", value: t, caution: limit - 25, limit: limit, unit: "°C", source: practice,
-			message: fmt.Sprintf("the junction reaches %.0f °C of %.0f °C allowed; better cooling or a part with less loss lowers it", t, limit)}.read(list)
+			message: func() string {
+				return fmt.Sprintf("the junction reaches %.0f °C of %.0f °C allowed; better cooling or a part with less loss lowers it", t, limit)
+			}}.read(list)
 	}
 	return list
 }
@@ -58,7 +60,9 @@ func thermalGain(m *Model, b *Budget, s *situation) (list []observation) {
 			continue // the models end here on both sides: there is no slope to speak of
 		}
 		list = gauge{part: partNames[part], rule: "thermal_gain", value: g, caution: 0.5, limit: 1, source: runaways,
-			message: fmt.Sprintf("a kelvin of heating brings %.2g kelvin more; at 1 the part runs away: lower its thermal resistance or its temperature-dependent loss", g)}.read(list)
+			message: func() string {
+				return fmt.Sprintf("a kelvin of heating brings %.2g kelvin more; at 1 the part runs away: lower its thermal resistance or its temperature-dependent loss", g)
+			}}.read(list)
 	}
 	return list
 }
@@ -74,7 +78,9 @@ func inductorHeatLimits(m *Model, b *Budget, s *situation) (list []observation) 
 		b.Inductor.RMS, l.IRMSRating.V, "the rms current", "A", "a larger inductor runs cooler")
 	t, limit := b.Temperatures.Inductor, l.TMax.V
 	return gauge{part: "inductor", rule: "inductor_heat", aspect: "temperature", value: t, caution: limit - 10, limit: limit, unit: "°C", source: practice,
-		message: fmt.Sprintf("the winding reaches %.0f °C of %.0f °C allowed; a larger inductor or more air lowers it", t, limit)}.read(list)
+		message: func() string {
+			return fmt.Sprintf("the winding reaches %.0f °C of %.0f °C allowed; a larger inductor or more air lowers it", t, limit)
+		}}.read(list)
 }
 
 func capacitorLimits(m *Model, b *Budget, s *situation) (list []observation) {
@@ -104,11 +110,15 @@ func modulation(m *Model, b *Budget, s *situation) (list []observation) {
 	}
 	if limits.DutyMax.V > 0 {
 		list = gauge{part: "controller", rule: "modulation", aspect: "duty", value: b.Duty / limits.DutyMax.V, caution: 0.9, limit: 1, source: controller,
-			message: fmt.Sprintf("the duty is %.3g of %.3g possible; the output sags where it is reached", b.Duty, limits.DutyMax.V)}.read(list)
+			message: func() string {
+				return fmt.Sprintf("the duty is %.3g of %.3g possible; the output sags where it is reached", b.Duty, limits.DutyMax.V)
+			}}.read(list)
 	}
 	if limits.OnTimeMin.V > 0 && b.OnTime > 0 {
 		list = gauge{part: "controller", rule: "modulation", aspect: "on_time", value: limits.OnTimeMin.V / b.OnTime, caution: 0.9, limit: 1, source: controller,
-			message: fmt.Sprintf("the on-time is %.3g ns, the shortest possible %.3g ns; below it the controller skips pulses, which this budget does not hold", 1e9*b.OnTime, 1e9*limits.OnTimeMin.V)}.read(list)
+			message: func() string {
+				return fmt.Sprintf("the on-time is %.3g ns, the shortest possible %.3g ns; below it the controller skips pulses, which this budget does not hold", 1e9*b.OnTime, 1e9*limits.OnTimeMin.V)
+			}}.read(list)
 	}
 	return list
 }

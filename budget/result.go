@@ -94,6 +94,7 @@ type Finding struct {
 	Level   Level
 	Part    string
 	Rule    string
+	Aspect  string // tells findings of one rule and part apart: "ripple", "voltage"
 	Message string
 	Value   float64
 	Limit   float64

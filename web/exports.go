@@ -136,11 +136,15 @@ func attach(w http.ResponseWriter, name, kind string, body []byte) {
 // fileName makes a name that is safe on every system out of a design's own:
 // letters, digits and dashes of ASCII, never a path, and not too long.
 func fileName(design string, revision int, ending string) string {
-	name := slug(design)
+	return fileStem(design, revision) + "-" + ending
+}
+
+// fileStem is what the names of a design's files begin with; revision 0 is its draft.
+func fileStem(design string, revision int) string {
 	if revision > 0 {
-		name += fmt.Sprintf("-r%d", revision)
+		return slug(design) + fmt.Sprintf("-r%d", revision)
 	}
-	return name + "-" + ending
+	return slug(design)
 }
 
 func slug(text string) string {

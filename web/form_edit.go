@@ -35,6 +35,7 @@ func readEdit(r *http.Request) (edit, error) {
 	}
 	v := r.PostForm
 	e := edit{values: v, structure: v.Get("structure"), do: v.Get("do"), note: v.Get("note.revision"), sight: sightOf(v, "view.")}
+	e.sight.whole = !live(r)
 	var err error
 	e.version, err = versionOf(v["version"])
 	return e, err

@@ -94,7 +94,7 @@ func (s *Server) revisionModel(r *http.Request, saved store.Revision, design *bu
 		return view.Revision{}, err
 	}
 	base := revisionAddress(kept.ID, saved.Number)
-	page, err := savedPage(r.Context(), saved, design, sightOf(r.URL.Query(), ""), base)
+	page, err := savedPage(r.Context(), saved, design, sightOn(r), base)
 	if err != nil {
 		return page, err
 	}
@@ -140,6 +140,10 @@ func savedPage(ctx context.Context, saved store.Revision, design *budget.Design,
 		return page, err
 	}
 	if page.Answers, err = p.answers(base, false, files(base)); err != nil {
+		return page, err
+	}
+	page.Answers.File = fileStem(design.Name, saved.Number)
+	if page.Answers.Map, err = p.mapPlace(ctx, base, mapModel(saved)); err != nil {
 		return page, err
 	}
 	page.Answers.Banner, err = banner(ctx, saved, design, points)

@@ -23,11 +23,11 @@ func (s *Server) sheetPage(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	q := r.URL.Query()
-	sh, err := s.openSheet(r.Context(), kept, draft, sightOf(q, ""))
+	sh, err := s.openSheet(r.Context(), kept, draft, sightOn(r))
 	if err != nil {
 		return err
 	}
+	q := r.URL.Query()
 	sh.way, sh.show = q.Get("step"), q.Get("show")
 	v, err := sh.model(r.Context())
 	if err != nil {

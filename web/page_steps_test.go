@@ -7,8 +7,6 @@ import (
 	"strings"
 	"testing"
 
-	"golang.org/x/net/html"
-
 	"lossbook/web/view"
 )
 
@@ -143,15 +141,6 @@ func TestUndoOpensWhatItChanged(t *testing.T) {
 			t.Errorf("%s is folded away at %s", id, where)
 		}
 	}
-}
-
-func hasAttr(n *html.Node, name string) bool {
-	for _, a := range n.Attr {
-		if a.Key == name {
-			return true
-		}
-	}
-	return false
 }
 
 // What the form holds that was not sent before is the edit that undo takes back,

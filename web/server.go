@@ -61,6 +61,7 @@ func newRouter(c Config) (chi.Router, error) {
 func routes(r chi.Router, s *Server) {
 	apiRoutes(r, s)
 	exportRoutes(r, s)
+	mapRoutes(r, s)
 	shareRoutes(r, s)
 	pageRoutes(r, s)
 }

@@ -75,7 +75,7 @@ func (s *Server) sharePage(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	page, err := savedPage(r.Context(), saved, design, sightOf(r.URL.Query(), ""), sharePrefix+chi.URLParam(r, "token"))
+	page, err := savedPage(r.Context(), saved, design, sightOn(r), sharePrefix+chi.URLParam(r, "token"))
 	if err != nil {
 		return err
 	}

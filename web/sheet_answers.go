@@ -167,6 +167,11 @@ func (s *sheet) answersOf(ctx context.Context) (view.Answers, error) {
 		s.now = fullLoad(design, p.columns)
 	}
 	a, err := p.answers(s.address(), true, take)
+	if err != nil {
+		return a, err
+	}
+	a.File = fileStem(design.Name, 0)
+	a.Map, err = p.mapPlace(ctx, s.address(), "")
 	a.Wrong, a.WrongToo = few(problemsOf(append(bad, missing...), true))
 	if len(missing) > 0 {
 		a.Missing, a.Sizing = missingParts(missing), sizing(s.draft, s.design)

@@ -35,16 +35,21 @@ func (p *picture) efficiencyChart(base string) (view.Chart, error) {
 	text, err := json.Marshal(data)
 	c := view.Chart{ID: "chart-efficiency", Kind: "efficiency", Title: "Efficiency, %", Caption: "against load, % of " +
 		quantityOf(p.design.Output.Current.V, "A", 3) + ", by input voltage", Data: string(text), Scale: "log"}
-	linear := p.spot.scale == "lin"
-	if linear {
+	if p.spot.scale == "lin" {
 		c.Scale = "lin"
 	}
-	c.Scales = []view.Link{
-		{Text: "log", Href: p.spot.scaled("").address(base), Here: !linear},
-		{Text: "linear", Href: p.spot.scaled("lin").address(base), Here: linear},
-	}
+	c.Scales = scaleLinks(p.spot.sight, base)
 	c.Heads, c.Rows = p.efficiencyTable()
 	return c, err
+}
+
+// scaleLinks are the choices of a load axis on the page at an address.
+func scaleLinks(s sight, at string) []view.Link {
+	linear := s.scale == "lin"
+	return []view.Link{
+		{Text: "log", Href: s.scaled("").address(at), Here: !linear},
+		{Text: "linear", Href: s.scaled("lin").address(at), Here: linear},
+	}
 }
 
 // drawn is the point as the chart reads it, in per cent, no finer than a

@@ -3,6 +3,7 @@ package web
 import (
 	"cmp"
 	"math"
+	"net/http"
 	"net/url"
 	"slices"
 	"strconv"
@@ -14,17 +15,30 @@ import (
 
 // sight is what of a budget is looked at, as the address says it: input voltage
 // and ambient of the ledger, the load of the large figures, the charts' axis, the
-// loss whose working is open. What is blank is the usual one, or none.
-type sight struct{ vin, ambient, load, scale, working string }
+// loss whose working is open, the chart that is opened besides the usual ones. What
+// is blank is the usual one, or none.
+type sight struct {
+	vin, ambient, load, scale, working, chart string
+
+	whole bool // asked for as a whole page: what a script would fetch stands on it
+}
 
 func sightOf(q url.Values, prefix string) sight {
-	return sight{q.Get(prefix + "vin"), q.Get(prefix + "ambient"), q.Get(prefix + "load"), q.Get(prefix + "scale"), q.Get(prefix + "working")}
+	return sight{vin: q.Get(prefix + "vin"), ambient: q.Get(prefix + "ambient"), load: q.Get(prefix + "load"), scale: q.Get(prefix + "scale"),
+		working: q.Get(prefix + "working"), chart: q.Get(prefix + "chart")}
+}
+
+// sightOn is the sight that the address of a page's request names.
+func sightOn(r *http.Request) sight {
+	g := sightOf(r.URL.Query(), "")
+	g.whole = !live(r)
+	return g
 }
 
 // address returns where the page at base shows this.
 func (g sight) address(base string) string {
 	q := url.Values{}
-	for key, value := range map[string]string{"vin": g.vin, "ambient": g.ambient, "load": g.load, "scale": g.scale, "working": g.working} {
+	for key, value := range map[string]string{"vin": g.vin, "ambient": g.ambient, "load": g.load, "scale": g.scale, "working": g.working, "chart": g.chart} {
 		if value != "" {
 			q.Set(key, value)
 		}
@@ -39,8 +53,9 @@ func (g sight) atVin(vin string) sight      { g.vin = vin; return g }
 func (g sight) atLoad(load string) sight    { g.load = load; return g }
 func (g sight) scaled(scale string) sight   { g.scale = scale; return g }
 func (g sight) opened(working string) sight { g.working = working; return g }
+func (g sight) charted(chart string) sight  { g.chart = chart; return g }
 func (g sight) hidden() view.Hidden {
-	return view.Hidden{Vin: g.vin, Ambient: g.ambient, Load: g.load, Scale: g.scale, Working: g.working}
+	return view.Hidden{Vin: g.vin, Ambient: g.ambient, Load: g.load, Scale: g.scale, Working: g.working, Chart: g.chart}
 }
 
 // spot is a sight worked out for a design. An entry of the address that can't
@@ -138,7 +153,7 @@ func drawnLoads() []float64 {
 
 // views draws the choice of what is looked at.
 func (s spot) views(d *budget.Design, base string, typed bool, vins []voltage) view.Views {
-	v := view.Views{Href: base, Typed: typed, Scale: s.scale, Working: s.working, At: s.words(d)}
+	v := view.Views{Href: base, Typed: typed, Scale: s.scale, Working: s.working, Chart: s.chart, At: s.words(d)}
 	for _, l := range vins {
 		text := quantity.Format(l.vin, "V")
 		v.Vins = append(v.Vins, view.Link{Text: text, Href: s.atVin(text).address(base), Here: l.vin == s.vin})

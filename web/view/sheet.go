@@ -23,7 +23,7 @@ func (s Sheet) Href() string { return "/designs/" + s.ID }
 
 // Hidden is what the form carries along: the version it was made from, which
 // entries it has, and the view that is shown.
-type Hidden struct{ Version, Structure, Vin, Ambient, Load, Scale, Working string }
+type Hidden struct{ Version, Structure, Vin, Ambient, Load, Scale, Working, Chart string }
 
 // Stale says that the design was changed elsewhere since the form was drawn.
 type Stale struct{ Words, Theirs, Keep, Version string }
@@ -58,6 +58,7 @@ type RevisionLine struct {
 
 // Answers is the right side: what comes of the entries.
 type Answers struct {
+	File     string    // what names of its files begin with
 	Wrong    []Problem // why these are the last good answers; none when they are current
 	WrongToo string    // how many more reasons there are
 	Banner   string    // of a revision whose recomputation differs
@@ -65,6 +66,7 @@ type Answers struct {
 	Head     *Head
 	Flow     *Flow
 	Charts   []Chart
+	Map      *MapPlace
 	Ledger   *Ledger
 	Working  *Working
 	Waves    *Waves
@@ -87,6 +89,7 @@ type Views struct {
 	Load    Field
 	Scale   string // of the load axis, carried along
 	Working string // that is open, carried along
+	Chart   string // the same of a chart
 	At      string // "12 V in, 2 A (100 %), 45 °C" in words
 }
 
