@@ -169,7 +169,11 @@ func (p page) harmless(where, name string) {
 			if !strings.HasPrefix(attr(n, "src"), "/assets/") || n.FirstChild != nil {
 				p.t.Errorf("%s: %q became a script", where, name)
 			}
-		case "svg", "iframe", "img":
+		case "svg":
+			if !inside(n, "flow") { // which is drawn here
+				p.t.Errorf("%s: %q became <svg>", where, name)
+			}
+		case "iframe", "img":
 			p.t.Errorf("%s: %q became <%s>", where, name, n.Data)
 		}
 		for _, a := range n.Attr {
