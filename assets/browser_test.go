@@ -105,7 +105,7 @@ func openGallery(t *testing.T, width int64, scheme string) context.Context {
 		t.Fatal(err)
 	}
 	do(t, ctx, chromedp.EmulateViewport(width, 900), chromedp.Navigate(serveGallery(t)))
-	wait(t, ctx, `document.querySelectorAll('loss-chart svg').length === 4`)
+	wait(t, ctx, `document.querySelectorAll('loss-chart .pane svg').length === 4`)
 	return ctx
 }
 

@@ -54,6 +54,9 @@
     ];
   }
 
+  const names = (series) => widest(series.map((s) => s.name));
+  const roomy = (series, width) => width - names(series) > 240; // px; else the names go under the lines
+
   function seriesNames(series) {
     return (_, {x, y}, __, dimensions) => drawNames(series.flatMap((s) => {
       const last = s.points.findLast((p) => p[1] !== null);
@@ -80,10 +83,11 @@
     const points = data.series.flatMap((s) => s.points);
     if (!points.some((p) => p[1] !== null)) return {empty: 'No load here has a figure.'};
     const x = xScale(points, scale), y = {...yScale(points, always), form};
-    const marks = [...axes(data, x, y), Plot.ruleY(always, {stroke: 'var(--edge)'}), ...data.series.flatMap(seriesMarks), seriesNames(data.series)];
-    const svg = Plot.plot({...frame(width, widest(data.series.map((s) => s.name))), x, y, marks});
+    const marks = [...axes(data, x, y), Plot.ruleY(always, {stroke: 'var(--edge)'}), ...data.series.flatMap(seriesMarks)];
+    const beside = roomy(data.series, width);
+    const svg = Plot.plot({...frame(width, beside ? names(data.series) : 0), x, y, marks: beside ? [...marks, seriesNames(data.series)] : marks});
     const note = points.some((p) => p[2]) ? '† underlaid: a curve held flat outside its range.' : '';
-    return {svg, note, stops: seriesStops(data, svg, form)};
+    return {svg, note, stops: seriesStops(data, svg, form), key: beside ? [] : data.series.map((s) => ({name: s.name, dash: dashes[s.dash % dashes.length]}))};
   }
 
   kind('efficiency', (data, width, scale) => drawLines(data, width, scale, [], number));

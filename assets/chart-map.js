@@ -53,16 +53,17 @@
     const cut = ring.findIndex((p) => !p || p.edge);
     if (cut < 0) return [[...ring, ring[0]].map((p) => [p.x, p.y])];
     const lines = [];
-    let line = [];
+    let line = [], from; // from: the place before the line, of no figure or at the border
     for (const p of [...ring.slice(cut), ...ring.slice(0, cut + 1)]) {
       if (p && !p.edge) {
         line.push([p.x, p.y]);
         continue;
       }
-      if (line.length > 1) lines.push(line);
+      if (line.length > 1) lines.push([from?.edge && onward(line[1], line[0], nx, ny), ...line, p?.edge && onward(line.at(-2), line.at(-1), nx, ny)].filter(Boolean));
       line = [];
+      from = p;
     }
-    return lines.map((l) => [onward(l[1], l[0], nx, ny), ...l, onward(l.at(-2), l.at(-1), nx, ny)].filter(Boolean));
+    return lines;
   }
 
   // Leads a line on from p, where it came from before, to the border if that is near.
@@ -70,7 +71,7 @@
     const [x, y] = p, dx = x - before[0], dy = y - before[1];
     const steps = [dx && ((dx > 0 ? nx : 0) - x) / dx, dy && ((dy > 0 ? ny : 0) - y) / dy].filter((t) => t > 0);
     const to = steps.map((t) => [x + t * dx, y + t * dy]);
-    return d3.least(to.filter((q) => Math.hypot(q[0] - x, q[1] - y) < 1.2), (q) => Math.hypot(q[0] - x, q[1] - y));
+    return d3.least(to.filter((q) => Math.hypot(q[0] - x, q[1] - y) < 3), (q) => Math.hypot(q[0] - x, q[1] - y));
   }
 
   // The cells of runs as a set of their numbers.
@@ -244,7 +245,7 @@
 
   function noteOf(data) {
     const exceeded = data.limits.some((l) => l.level === 'exceeded'), near = data.limits.some((l) => l.level === 'caution');
-    return [data.here && 'Ring: the point of the figures above.', exceeded && 'Hatched: over a limit.', near && 'Dashed: near one.',
+    return [data.here && `Ring: ${quantity(data.here[0], data.x.unit)}, ${quantity(data.here[1], data.y.unit)}.`, exceeded && 'Hatched: over a limit.', near && 'Dashed: near one.',
       data.outside.length && '† a curve held flat outside its range.'].filter(Boolean).join(' ');
   }
 

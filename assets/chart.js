@@ -8,7 +8,9 @@
    the stylesheet, so light and dark need no redraw.
 
    Each kind is a file that calls lossChart.kind(name, draw) and says what its data
-   holds: chart-lines.js, chart-stack.js. All data has a title (read aloud, not
+   holds: chart-lines.js, chart-stack.js, chart-map.js. What every chart can do
+   besides – its cursor, and being taken along as a file (chart-take.js) – needs
+   nothing more of a kind. All data has a title (read aloud, not
    drawn) and x and y with {label, unit}. draw(data, width, scale) returns
 
      {svg,      the drawing, as wide as it was told
@@ -18,7 +20,8 @@
                 each row. The keys up and down then go from row to row
       start,    the stop that the keys begin at, if it is neither of the ends
       note,     said while nothing is pointed at
-      key,      [{name, cls}] to be set below the drawing, or []
+      key,      [{name, cls}] of parts, or [{name, dash}] of lines, to be set below
+                the drawing; none where it names them itself
       empty}    words instead of a drawing, where there is nothing to draw */
 globalThis.lossChart = (() => {
   'use strict';
@@ -87,6 +90,8 @@ globalThis.lossChart = (() => {
     #pane = make('div', {class: 'pane', tabindex: '0', role: 'group'});
     #key = make('ul', {class: 'key'});
     #reading = make('p', {class: 'reading', 'aria-live': 'polite'});
+    #take = make('div', {class: 'take noprint'});
+    #below = make('div', {class: 'below'});
     #sizes = new ResizeObserver(() => { if (this.clientWidth !== this.#width) this.#schedule(); });
     #width = 0;
     #frame = 0; // the animation frame a drawing is asked for in; 0: none
@@ -100,11 +105,17 @@ globalThis.lossChart = (() => {
       super();
       this.#pane.addEventListener('keydown', (event) => this.#press(event));
       this.#pane.addEventListener('pointermove', (event) => this.#point(event));
+      for (const form of ['SVG', 'PNG']) {
+        const button = make('button', {type: 'button', class: 'quiet'}, form);
+        button.addEventListener('click', () => this.#save(form));
+        this.#take.append(button);
+      }
       for (const left of ['pointerleave', 'blur']) this.#pane.addEventListener(left, () => this.#move(-1));
     }
 
     connectedCallback() {
-      this.replaceChildren(this.#pane, this.#key, this.#reading);
+      this.#below.replaceChildren(this.#reading, this.#take);
+      this.replaceChildren(this.#pane, this.#key, this.#below);
       this.#sizes.observe(this);
       this.#schedule();
     }
@@ -119,6 +130,20 @@ globalThis.lossChart = (() => {
 
     redraw() { this.#schedule(); }
 
+    // Draws the chart for another place: {data, drawn}.
+    drawn(width) {
+      const data = JSON.parse(this.getAttribute('data'));
+      return {data, drawn: drawings.get(this.getAttribute('kind'))(data, width, this.getAttribute('scale'))};
+    }
+
+    async #save(form) {
+      try {
+        await lossChart.take(this, form);
+      } catch {
+        this.#reading.textContent = `The ${form} could not be made: Lossbook did not answer, or there is no room for it.`;
+      }
+    }
+
     // Several attributes change in one morph; they are drawn once, before the paint.
     #schedule() {
       this.#frame ||= requestAnimationFrame(() => {
@@ -129,16 +154,16 @@ globalThis.lossChart = (() => {
 
     #draw() {
       this.#width = this.clientWidth;
-      const draw = drawings.get(this.getAttribute('kind'));
-      if (!draw) return; // its file is still to come
-      const data = JSON.parse(this.getAttribute('data'));
-      const drawn = draw(data, this.#width, this.getAttribute('scale'));
+      if (!drawings.has(this.getAttribute('kind'))) return; // its file is still to come
+      const {data, drawn} = this.drawn(this.#width);
       this.#stops = drawn.stops ?? [];
       this.#across = drawn.across ?? 0;
       this.#start = drawn.start ?? -1;
       this.#note = drawn.note ?? '';
       this.#pane.setAttribute('aria-label', `${data.title}: ${hint}`);
       this.#pane.replaceChildren(drawn.svg ? labelled(drawn.svg, data) : make('p', {class: 'empty'}, drawn.empty));
+      this.#take.hidden = !drawn.svg;
+      for (const button of this.#take.children) button.setAttribute('aria-label', `Save “${data.title}” as ${button.textContent}`);
       this.#key.replaceChildren(...(drawn.key ?? []).map(keyEntry));
       this.#move(Math.min(this.#cursor, this.#stops.length - 1));
     }
@@ -197,11 +222,17 @@ globalThis.lossChart = (() => {
     return svg;
   }
 
-  function keyEntry({name, cls}) {
+  function keyEntry({name, cls, dash}) {
     const entry = make('li', {}, name);
-    entry.prepend(make('i', {class: cls}));
+    entry.prepend(cls ? make('i', {class: cls}) : sample(dash));
     return entry;
   }
+
+  const sample = (dash) => {
+    const svg = d3.create('svg:svg').attr('class', 'dash').attr('width', 26).attr('height', 10).attr('aria-hidden', 'true');
+    svg.append('path').attr('d', 'M0 5H26').attr('stroke', 'var(--ink)').attr('stroke-width', 1.8).attr('stroke-dasharray', dash);
+    return svg.node();
+  };
 
   customElements.define('loss-chart', LossChart);
 
@@ -211,5 +242,5 @@ globalThis.lossChart = (() => {
     for (const chart of document.querySelectorAll('loss-chart')) if (chart.getAttribute('kind') === name) chart.redraw();
   }
 
-  return {kind, number, change, digits, quantity, widest, partFill, drawNames, frame, axes};
+  return {kind, make, number, change, digits, quantity, widest, partFill, drawNames, frame, axes};
 })();

@@ -89,7 +89,7 @@ func TestMapCursor(t *testing.T) {
 	want(t, ctx, readsMap+`.startsWith('at 5 %, 38 V — 67.27 %†, loss')`, true)
 	want(t, ctx, `document.querySelectorAll('#map .cursor circle').length`, 1)
 	do(t, ctx, chromedp.KeyEvent(kb.Escape))
-	want(t, ctx, readsMap, "Arrow keys or pointer read the values. Ring: the point of the figures above. Hatched: over a limit. Dashed: near one. † a curve held flat outside its range.")
+	want(t, ctx, readsMap, "Arrow keys or pointer read the values. Ring: 50 %, 24 V. Hatched: over a limit. Dashed: near one. † a curve held flat outside its range.")
 	// The pointer finds the nearest point in both directions.
 	want(t, ctx, `(() => {
 		const pane = document.querySelector('#map .pane'), box = pane.getBoundingClientRect();

@@ -40,7 +40,7 @@ func TestChartNamesStayApart(t *testing.T) {
 
 func TestChartIsNamedOnce(t *testing.T) {
 	ctx := openGallery(t, 1440, "light")
-	want(t, ctx, `[...document.querySelectorAll('loss-chart svg')].map(s => s.getAttribute('role') + ': ' + s.getAttribute('aria-label')).join(' | ')`,
+	want(t, ctx, `[...document.querySelectorAll('loss-chart .pane svg')].map(s => s.getAttribute('role') + ': ' + s.getAttribute('aria-label')).join(' | ')`,
 		"img: Efficiency against load: efficiency, % over load, % of 2 A | img: Loss against load, by part: loss, W over load, % of 2 A | "+
 			"img: Efficiency against revision 1: difference, percentage points over load, % of 2 A | "+
 			"img: Efficiency over load and input voltage: input, V over load, % of 2 A")

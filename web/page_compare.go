@@ -34,7 +34,7 @@ const foldedFrom = 20
 
 // model draws the whole page.
 func (c *comparison) model() (view.Compare, error) {
-	v := view.Compare{Title: c.title(), Sides: c.sideViews(), Basis: c.basis(), Views: c.views(), Rule: c.rules(), Gaps: c.gaps(),
+	v := view.Compare{Title: c.title(), File: slug(c.title()), Sides: c.sideViews(), Basis: c.basis(), Views: c.views(), Rule: c.rules(), Gaps: c.gaps(),
 		Losses: c.lossTable(c.load), Loads: c.overLoads(), Zero: c.idleWords(), Outside: c.outside(), CSV: "/compare.csv" + c.query()}
 	v.Page = frame(v.Title)
 	v.Choose = view.Link{Text: "choose others", Href: chooserAddress(c.pins)}

@@ -2,6 +2,7 @@ package view
 
 // Compare is the page of revisions laid beside each other.
 type Compare struct {
+	File       string // what names of its files begin with
 	Page       Page
 	Title      string
 	Sides      []CompareSide
