@@ -6,6 +6,7 @@ import (
 	"math"
 	"math/rand/v2"
 	"os"
+	"slices"
 	"strings"
 	"testing"
 )
@@ -13,39 +14,46 @@ import (
 // stated are the bounds that the guide states: the largest share by which a quantity
 // may be off, of efficiency the largest difference.
 var stated = []struct {
-	domain, quantities string
-	most               float64
+	domains    []int
+	quantities string
+	most       float64
 }{
-	{domains[0].name, strings.Join(currents, "|"), 0.009},
-	{domains[0].name, "mean inductor current", 0.003},
-	{domains[0].name, "mean rectifier current|inductor current, valley to peak", 0.01},
-	{domains[0].name, "duty|loss", 0.015},
-	{domains[0].name, "efficiency", 0.0005},
-	{domains[3].name, "mean inductor current|rms inductor current", 0.0003},
-	{domains[3].name, "peak inductor current|rms switch current|rms rectifier current|mean rectifier current|rms input capacitor current|rms output capacitor current", 0.01},
-	{domains[3].name, "duty|inductor current, valley to peak|loss", 0.005},
-	{domains[3].name, "efficiency", 0.0005},
+	{unnoted, strings.Join(currents, "|"), 0.009},
+	{unnoted, "mean inductor current", 0.003},
+	{unnoted, "mean rectifier current|inductor current, valley to peak", 0.01},
+	{unnoted, "duty|loss", 0.015},
+	{unnoted, "efficiency", 0.0005},
+	{steadily, "mean inductor current|rms inductor current", 0.0003},
+	{steadily, "peak inductor current|rms switch current|rms rectifier current|mean rectifier current|rms input capacitor current|rms output capacitor current", 0.01},
+	{steadily, "duty|inductor current, valley to peak|loss", 0.005},
+	{steadily, "efficiency", 0.0005},
 }
+
+// The domains with bounds, by their place in the table.
+var (
+	unnoted  = []int{0, 4}
+	steadily = []int{3}
+)
 
 // TestExactBounds holds every stage of the domains to the bounds stated.
 func TestExactBounds(t *testing.T) {
 	checked := map[string]int{}
 	for _, p := range compared(t) {
 		for _, b := range stated {
+			if !slices.ContainsFunc(b.domains, func(i int) bool { return domains[i].name == p.domain }) {
+				continue
+			}
 			for _, q := range strings.Split(b.quantities, "|") {
-				if p.domain != b.domain {
-					continue
-				}
-				checked[b.domain]++
+				checked[p.domain]++
 				if off, known := p.off[q]; !known || !(off <= b.most) {
 					t.Errorf("%s, %s %s: %s is off by %.3g, stated are %g", p.domain, p.topology, p.mode, q, off, b.most)
 				}
 			}
 		}
 	}
-	for _, d := range []domain{domains[0], domains[3]} {
-		if want := d.per * 18 * len(quantities); checked[d.name] != want {
-			t.Errorf("%s: %d figures checked, want %d", d.name, checked[d.name], want)
+	for _, i := range append(steadily, unnoted...) {
+		if d := domains[i]; checked[d.name] != d.per*18*len(quantities) {
+			t.Errorf("%s: %d figures checked, want %d", d.name, checked[d.name], d.per*18*len(quantities))
 		}
 	}
 }
@@ -65,11 +73,13 @@ func TestExactNote(t *testing.T) {
 		}
 	}
 	var off, within, mixedOff, mixedIdle int
+	most := 0.0
 	for _, p := range all {
 		worst := 0.0
 		for _, q := range currents {
 			worst = math.Max(worst, p.off[q])
 		}
+		most = math.Max(most, worst)
 		switch {
 		case worst > 0.01:
 			off++
@@ -86,7 +96,7 @@ func TestExactNote(t *testing.T) {
 			}
 		}
 	}
-	t.Logf("%d of %d stages off by more than 0.01, all noted; of %d mixed stages %d off, %d of the %d others noted too", off, len(all), more, mixedOff, mixedIdle, within)
+	t.Logf("%d of %d stages have a current off by more than 0.01 (at most %.2g); of %d mixed stages %d off, %d of the %d others noted too", off, len(all), most, more, mixedOff, mixedIdle, within)
 	if off < 200 || within < 200 || mixedOff < 50 {
 		t.Errorf("only %d stages off, %d within, %d mixed ones off", off, within, mixedOff)
 	}

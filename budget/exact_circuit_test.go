@@ -25,6 +25,7 @@ type circuit struct {
 
 	period, inductance  float64
 	vin, vout, load     float64
+	kink                float64 // 1/A: the inductance halves at a current of 1/kink; 0 of a linear network
 	inputC, inputESR    float64
 	outputC, outputESR  float64
 	guessOn, guessTotal float64 // volts that drive the inductor without drops, to start from

@@ -20,6 +20,7 @@ func (c *circuit) plain() (circuit, float64) {
 	p.period, p.inductance = 1, 1
 	p.vin, p.vout, p.load = 1, c.vout/volt, c.load/ampere
 	p.guessOn, p.guessTotal = c.guessOn/volt, c.guessTotal/volt
+	p.kink = c.kink * ampere
 	p.inputC, p.outputC = c.inputC/farad, c.outputC/farad
 	p.inputESR, p.outputESR = c.inputESR/ohm, c.outputESR/ohm
 	for _, way := range []*path{&p.on, &p.off} {
@@ -30,9 +31,13 @@ func (c *circuit) plain() (circuit, float64) {
 }
 
 // exact returns the figures of a circuit whose mean output voltage is Vout.
-func (c *circuit) exact() (figures, error) {
+func (c *circuit) exact(topology string) (f figures, err error) {
 	p, ampere := c.plain()
-	f, err := p.settled()
+	if p.kink > 0 {
+		f, err = p.lapped(topology)
+	} else {
+		f, err = p.settled()
+	}
 	for _, current := range []*float64{&f.mean, &f.rms, &f.max, &f.min, &f.switchRMS, &f.rectifierRMS, &f.rectifierMean, &f.inputRMS, &f.outputRMS, &f.source} {
 		*current *= ampere
 	}

@@ -31,6 +31,7 @@ type spice struct {
 	charge     [2]float64 // ripple voltage of each capacitor by its charge, as a share of its voltage
 	esr        [2]float64 // the same by its series resistance
 	load       [2]float64 // as a share of full load
+	saturation [2]float64 // share of the inductance that is lost at the mean current; 0 of none
 }
 
 // draw makes a stage of the topology and rectifier given; the load is drawn down from
@@ -76,6 +77,10 @@ func (r stages) draw(topology, rectifier string, s spice) stage {
 	c.outputC = drawn[topology != "buck"] * c.period / (vout * in(s.charge))
 	c.inputESR = in(s.esr) * vin / (mean * square)
 	c.outputESR = in(s.esr) * vout / mean
+	if s.saturation[0] > 0 {
+		lost := in(s.saturation)
+		c.kink = math.Sqrt(lost/(1-lost)) / mean
+	}
 	full := c.load
 	c.load *= in(s.load)
 	return stage{entered(topology, rectifier, &c, full, winding, rds, rectifierOhm, at), budget.Point{Vin: vin, Iout: c.load, Ambient: 20}, c}
@@ -93,6 +98,9 @@ func entered(topology, rectifier string, c *circuit, full, winding, rds, rectifi
 		InputCapacitor:  &budget.Capacitor{Capacitance: n(c.inputC), ESR: n(c.inputESR)},
 		OutputCapacitor: &budget.Capacitor{Capacitance: n(c.outputC), ESR: n(c.outputESR)},
 		Drive:           &budget.Drive{Voltage: n(10), RSource: n(1), RSink: n(1)}}
+	if c.kink > 0 {
+		d.Inductor.ISat, d.Inductor.SatDrop = n(1/c.kink), n(0.5)
+	}
 	if rectifier == "diode" {
 		d.Rectifier = "diode"
 		d.Diode = &budget.Diode{VRRM: n(4 * (c.vin + c.vout)), VF0: n(c.off.drop), RD: n(rectifierOhm), ThetaJA: n(0)}

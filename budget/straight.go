@@ -122,15 +122,15 @@ func (l *look) flows(at stage.Branch, k int) bool {
 }
 
 // lookAgain balances the flow once more with what straight lines leave out, to first
-// order: the capacitors' voltages move, drops move with the current, and the source
-// feeds the loss of the input capacitor too. If the voltage on the inductor falls by
-// the share β of its mean V during an interval, with a quadratic part of γ·V, the
-// current is no line from Imin to Imax but
+// order: the capacitors' voltages move, drops move with the current, the inductance
+// falls with it, and the source feeds the loss of the input capacitor too. If voltage
+// over inductance, and so the current's slope, falls by the share β of its mean during
+// an interval, with a quadratic part of the share γ, the current is no line from Imin
+// to Imax but
 //
 //	mean = (Imin + Imax)/2 ± β·Δi/12      variance = Δi²/12·(1 − γ/15) + (β·Δi/12)²/5
 //
-// + while it rises, − while it falls. The inductance is taken as constant meanwhile.
-// Without a solution the ripple alone is told.
+// + while it rises, − while it falls. Without a solution the ripple alone is told.
 func (s *situation) lookAgain() (l look, possible bool) {
 	w, m := s.flow, s.m
 	l.flow, l.continuous = w, s.mode == CCM
@@ -142,9 +142,10 @@ func (s *situation) lookAgain() (l look, possible bool) {
 	ways := s.branches()
 	steady := [2]float64{w.Linkage / (w.D1 * m.period), w.Linkage / (w.D2 * m.period)}
 	drop := [2]float64{ways.On * w.Swing(), ways.Off * w.Swing()}
-	var β [2]float64
+	rise, hump := s.softening()
+	β := [2]float64{-rise, rise}
 	for k := range β {
-		β[k] = (drop[k] - v.rise[k]) / steady[k]
+		β[k] += (drop[k] - v.rise[k]) / steady[k]
 		l.ripple = math.Max(l.ripple, math.Abs(v.mean[k])/steady[k])
 	}
 	flux := stage.Drive{On: s.frame.flux.On + v.mean[0], Off: s.frame.flux.Off + v.mean[1], Period: m.period}
@@ -158,8 +159,17 @@ func (s *situation) lookAgain() (l look, possible bool) {
 	if wrong != stage.NoFault {
 		return l, false
 	}
-	l.curve(β, [2]float64{v.hump[0] / steady[0], v.hump[1] / steady[1]})
+	l.curve(β, [2]float64{hump + v.hump[0]/steady[0], hump + v.hump[1]/steady[1]})
 	return l, true
+}
+
+// softening returns by which share of its mean the reciprocal of the inductance is
+// larger at the highest current than at the lowest, and its quadratic part.
+func (s *situation) softening() (rise, hump float64) {
+	w, law := s.flow, s.m.law
+	mean := w.Linkage / w.Swing()
+	low, middle, high := mean/law.Slope(w.Min), mean/law.Slope((w.Min+w.Max)/2), mean/law.Slope(w.Max)
+	return high - low, 2 * (high + low - 2*middle)
 }
 
 // curve puts the parabolas on the flow's lines. In continuous conduction the whole
