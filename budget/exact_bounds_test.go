@@ -59,7 +59,8 @@ func TestExactBounds(t *testing.T) {
 }
 
 // TestExactNote asks of the note that it misses no stage with a current that is off by
-// more than a hundredth, and that it seldom cries for nothing.
+// more than a hundredth, that it seldom cries for nothing, and that the share it tells
+// is about right where that is below a twentieth.
 func TestExactNote(t *testing.T) {
 	mixed := domain{name: "mixed", per: math.MaxInt, holds: func(float64, bool) bool { return true },
 		spice: spice{resistance: [2]float64{5e-4, 0.05}, ripple: [2]float64{0.1, 4}, charge: [2]float64{1e-3, 0.05}, esr: [2]float64{1e-4, 0.02}, load: [2]float64{0.04, 1}}}
@@ -73,13 +74,16 @@ func TestExactNote(t *testing.T) {
 		}
 	}
 	var off, within, mixedOff, mixedIdle int
-	most := 0.0
+	most, told := 0.0, []float64{}
 	for _, p := range all {
 		worst := 0.0
 		for _, q := range currents {
 			worst = math.Max(worst, p.off[q])
 		}
 		most = math.Max(most, worst)
+		if p.noted && worst < 0.05 {
+			told = append(told, math.Abs(p.told-worst)/worst)
+		}
 		switch {
 		case worst > 0.01:
 			off++
@@ -97,6 +101,10 @@ func TestExactNote(t *testing.T) {
 		}
 	}
 	t.Logf("%d of %d stages have a current off by more than 0.01 (at most %.2g); of %d mixed stages %d off, %d of the %d others noted too", off, len(all), most, more, mixedOff, mixedIdle, within)
+	slices.Sort(told)
+	if usual := told[len(told)*9/10]; len(told) < 300 || !(usual < 0.12) {
+		t.Errorf("in nine of ten of %d notes the share told is within %.2g of itself", len(told), usual)
+	}
 	if off < 200 || within < 200 || mixedOff < 50 {
 		t.Errorf("only %d stages off, %d within, %d mixed ones off", off, within, mixedOff)
 	}

@@ -55,6 +55,7 @@ var domains = []domain{
 type pair struct {
 	domain, topology, mode string
 	noted                  bool
+	told                   float64            // the share that the note tells
 	off                    map[string]float64 // by quantity, the share by which the budget's differs
 }
 
@@ -106,7 +107,11 @@ func (d *domain) solve(t *testing.T, s *stage, rectifier string, full func(p *pa
 	if full(&p) {
 		return p, false
 	}
-	p.noted = slices.ContainsFunc(m.Findings(&b), func(f budget.Finding) bool { return f.Rule == noteRule })
+	for _, f := range m.Findings(&b) {
+		if f.Rule == noteRule {
+			p.noted, p.told = true, f.Value
+		}
+	}
 	if !d.holds(resistance, p.noted) {
 		return p, false
 	}

@@ -125,8 +125,8 @@ func (l *look) flows(at stage.Branch, k int) bool {
 // order: the capacitors' voltages move, drops move with the current, the inductance
 // falls with it, and the source feeds the loss of the input capacitor too. If voltage
 // over inductance, and so the current's slope, falls by the share β of its mean during
-// an interval, with a quadratic part of the share γ, the current is no line from Imin
-// to Imax but
+// an interval, with a quadratic part of γ from the capacitors, the current is no line
+// from Imin to Imax but
 //
 //	mean = (Imin + Imax)/2 ± β·Δi/12      variance = Δi²/12·(1 − γ/15) + (β·Δi/12)²/5
 //
@@ -142,8 +142,8 @@ func (s *situation) lookAgain() (l look, possible bool) {
 	ways := s.branches()
 	steady := [2]float64{w.Linkage / (w.D1 * m.period), w.Linkage / (w.D2 * m.period)}
 	drop := [2]float64{ways.On * w.Swing(), ways.Off * w.Swing()}
-	rise, hump := s.softening()
-	β := [2]float64{-rise, rise}
+	softer := s.softening()
+	β := [2]float64{-softer, softer}
 	for k := range β {
 		β[k] += (drop[k] - v.rise[k]) / steady[k]
 		l.ripple = math.Max(l.ripple, math.Abs(v.mean[k])/steady[k])
@@ -159,17 +159,15 @@ func (s *situation) lookAgain() (l look, possible bool) {
 	if wrong != stage.NoFault {
 		return l, false
 	}
-	l.curve(β, [2]float64{hump + v.hump[0]/steady[0], hump + v.hump[1]/steady[1]})
+	l.curve(β, [2]float64{v.hump[0] / steady[0], v.hump[1] / steady[1]})
 	return l, true
 }
 
 // softening returns by which share of its mean the reciprocal of the inductance is
-// larger at the highest current than at the lowest, and its quadratic part.
-func (s *situation) softening() (rise, hump float64) {
+// larger at the highest current than at the lowest.
+func (s *situation) softening() float64 {
 	w, law := s.flow, s.m.law
-	mean := w.Linkage / w.Swing()
-	low, middle, high := mean/law.Slope(w.Min), mean/law.Slope((w.Min+w.Max)/2), mean/law.Slope(w.Max)
-	return high - low, 2 * (high + low - 2*middle)
+	return w.Linkage / w.Swing() * (1/law.Slope(w.Max) - 1/law.Slope(w.Min))
 }
 
 // curve puts the parabolas on the flow's lines. In continuous conduction the whole

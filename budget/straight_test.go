@@ -21,6 +21,7 @@ func TestStraightLineBegins(t *testing.T) {
 		{"output_capacitor.capacitance", 3e-4, 1e-6, 8, "the output capacitor’s rms current"},
 		{"switch.rds_on", 6e-3, 2, 0.8, "the switch’s rms current"},
 		{"inductor.dcr", 5e-3, 2, 0.8, "the switch’s rms current"},
+		{"inductor.sat_drop", 0.01, 0.8, 16, "the inductor’s peak current"},
 	} {
 		at := Point{48, c.load, 25}
 		list := func(v float64) []Finding {
