@@ -46,6 +46,9 @@ func TestRecoveryScaling(t *testing.T) {
 	if got := (device.Recovery{Softness: 0.5}).At(5, 1e8); got != (device.Reverse{}) {
 		t.Errorf("no charge recovers %+v", got)
 	}
+	if got := (device.Recovery{CurrentExponent: 0.5, SlopeExponent: 0.5, Softness: 0.5}).At(5, 1e8); got != (device.Reverse{}) {
+		t.Errorf("no charge, stated at no current, recovers %+v", got)
+	}
 	if got := (device.Recovery{Charge: -1e-9, Softness: 0.5}).At(5, 1e8); got != (device.Reverse{}) {
 		t.Errorf("a negative charge recovers %+v", got)
 	}

@@ -48,7 +48,7 @@ func TestValue(t *testing.T) {
 }
 
 func TestUnreadable(t *testing.T) {
-	for _, text := range []string{"", "a +", "(a", "|a", "a b", "max(a)", "exp(a, b)", "1.2.3", "a_", "a ^", ")", "a·/b"} {
+	for _, text := range []string{"", "a +", "(a", "|a", "a b", "max(a)", "exp(a, b)", "1.2.3", "a_", "a_·2", "a_+b", "a ^", ")", "a·/b"} {
 		if e, err := Parse(text); err == nil {
 			t.Errorf("%q is read as %+v", text, e.Root)
 		}

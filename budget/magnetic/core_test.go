@@ -74,6 +74,9 @@ func TestCoreBySegments(t *testing.T) {
 	if (magnetic.Core{}).Known() || !core.Known() || (magnetic.Core{}).Loss(1, 0.5, 0.5, 1) != 0 {
 		t.Error("the zero core is the one without loss")
 	}
+	if none := magnetic.MaterialCore(volume, area, turns, 0, s, f); none.Known() || none.Loss(swing, d1, d2, 1) != 0 {
+		t.Error("a core of k 0 has no loss")
+	}
 	if got := core.Loss(0, 0, 0, 1); got != 0 {
 		t.Errorf("no swing loses %g W", got)
 	}

@@ -59,10 +59,14 @@ func TestCosinesBeyondTheTable(t *testing.T) {
 		{"colder than the table", layered, 0.3, -80.1, false}, {"its cold end", layered, 0.3, -80, true},
 		{"hotter", layered, 0.3, 400, false}, {"just below its hot end", layered, 0.3, 399.9, true},
 		{"no layers, whatever the temperature", plain, 0.3, 5000, true},
-		{"a whole period", layered, 1, 25, true}, {"more", layered, 1.1, 25, false}, {"less than nothing", layered, -0.1, 25, false}, {"no number", layered, math.NaN(), 25, false},
+		{"a whole period", layered, 1, 25, true}, {"more", layered, math.Nextafter(1, 2), 25, false}, {"no share at all", layered, 0, 25, true}, {"less than nothing", layered, -0.1, 25, false}, {"no number", layered, math.NaN(), 25, false},
 	} {
-		if _, possible := c.s.Cosines(c.d, c.t); possible != c.want {
+		sum, possible := c.s.Cosines(c.d, c.t)
+		if possible != c.want {
 			t.Errorf("%s: possible %v, want %v", c.name, possible, c.want)
+		}
+		if !possible && sum != 0 || c.d == 0 && math.Abs(sum) > 1e-12 {
+			t.Errorf("%s: the sum is %g", c.name, sum)
 		}
 	}
 }

@@ -37,6 +37,7 @@ func TestLinkage(t *testing.T) {
 		{"linkage at −5 A", law.At(-5), -area(5), 1e-14, "odd"},
 		{"inductance at 1000 A", large.Slope(1000), 0.7 * l, exact, "the stated drop"},
 		{"linkage at 1000 A", large.At(1000), integral(large.Slope, 0, 1000), 1e-14, "quadrature of L(i)"},
+		{"inductance at a drop of half a per cent", magnetic.NewLinkage(l, sat, 0.005, nil).Slope(sat), 0.995 * l, exact, "the stated drop"},
 		{"tiny drop", magnetic.NewLinkage(l, sat, 1e-12, nil).At(5), l * 5, 1e-12, "next to constant"},
 		{"constant", plain.At(-3), -3 * l, exact, "L·i"},
 		{"constant slope", plain.Slope(100), l, 0, "L"},
@@ -86,7 +87,7 @@ func TestSwing(t *testing.T) {
 			}
 			rows = append(rows, row{fmt.Sprintf("law, mean %g A, y %g·π", mean, share), half, bisected(law, mean, share*most), tolerance * (1 + mean*mean/20), "bisection"})
 		}
-		for _, linkage := range []float64{1e-6, 5e-5, 2e-4, 1e-2} {
+		for _, linkage := range []float64{1e-7, 1e-6, 5e-5, 2e-4, 1e-2} {
 			half, possible := curve.Swing(mean, linkage)
 			if !possible {
 				t.Errorf("a curve refused %g V·s", linkage)
@@ -114,8 +115,8 @@ func TestSwingEnds(t *testing.T) {
 		t.Errorf("just below π: %g, %v", half, possible)
 	}
 	for _, y := range []float64{math.Pi, math.Nextafter(math.Pi, 4), 1e300, math.Inf(1), math.NaN()} {
-		if _, possible := law.Swing(3, y); possible {
-			t.Errorf("y %.17g was accepted", y)
+		if half, possible := law.Swing(3, y); possible || half != 0 {
+			t.Errorf("y %.17g was accepted, with %g A", y, half)
 		}
 	}
 	previous := 0.0

@@ -129,6 +129,8 @@ func TestFaults(t *testing.T) {
 		{"swing beyond the law", true, d, stage.Branches{}, soft(1e-8), 1, stage.SwingTooLarge},
 		{"rest, no on-voltage", false, stage.Drive{On: 0, Off: 5, Period: period}, stage.Branches{}, coil(1), 1, stage.NoOnVoltage},
 		{"rest, no off-voltage", false, d, stage.Branches{Threshold: -5}, coil(1), 1, stage.NoOffVoltage},
+		{"rest, next to no on-voltage", false, stage.Drive{On: 1e-9, Off: 5, Period: period}, stage.Branches{}, coil(1), 1, stage.NoFault},
+		{"rest, next to no off-voltage", false, d, stage.Branches{Threshold: -5 + 1e-9}, coil(1), 1, stage.NoFault},
 		{"rest, reversed", false, d, stage.Branches{}, coil(1), -1e-300, stage.CurrentReverse},
 		{"rest, no current", false, d, stage.Branches{}, coil(1), 0, stage.NoFault},
 		{"rest, next to no current", false, d, stage.Branches{}, coil(1), 1e-300, stage.NoFault},

@@ -4,6 +4,7 @@ import (
 	"math"
 	"testing"
 
+	"lossbook/budget/magnetic"
 	"lossbook/budget/stage"
 )
 
@@ -19,7 +20,7 @@ func (c counted) At(i float64) float64 { *c.asked++; return c.Linkage.At(i) }
 // resistance it has the closed form √(2·il·T/(L·(1/Von + 1/Voff))), and the search
 // begins there and has nothing left to do.
 func TestPeakStartsWell(t *testing.T) {
-	for _, il := range []float64{1e-6, 0.3, 40} {
+	for _, il := range []float64{1e-6, 0.01, 0.3, 40} {
 		for _, threshold := range []float64{0, 0.7} {
 			asked := 0
 			d := stage.Drive{On: 7, Off: 2, Period: period}
@@ -61,15 +62,34 @@ func TestPeakSteps(t *testing.T) {
 // form: of a coil without saturation P = Von·T/L, and λ(2·il) = 2·L·il, so that
 // il = T/(2·L)/(1/Von + 1/(Voff + Vd + P/2·Roff)).
 func TestCannotRestBounds(t *testing.T) {
-	worst := stage.Branches{Off: 0.4, Threshold: 0.3}
-	for _, l := range []float64{3e-6, 10e-3} {
-		d := stage.Drive{On: 7, Off: 2, Period: period}
-		peak := 7 * period / l
-		end := period / (2 * l) / (1.0/7 + 1/(2.3+peak/2*0.4))
+	for _, c := range []struct{ on, off, vd, roff, l float64 }{
+		{7, 2, 0.3, 0.4, 3e-6}, {7, 2, 0.3, 0.4, 10e-3}, {5e-3, 2, 0.3, 0, 3e-6}, {7, 4e-3, 1e-3, 0, 3e-6},
+	} {
+		d, worst := stage.Drive{On: c.on, Off: c.off, Period: period}, stage.Branches{Off: c.roff, Threshold: c.vd}
+		peak := c.on * period / c.l
+		end := period / (2 * c.l) / (1/c.on + 1/(c.off+c.vd+peak/2*c.roff))
 		for share, want := range map[float64]bool{1 - 1e-9: false, 1 + 1e-9: true} {
-			if got := stage.CannotRest(d, worst, coil(l), share*end); got != want {
-				t.Errorf("%g H, %g of %g A: proved %v, want %v", l, share, end, got, want)
+			if got := stage.CannotRest(d, worst, coil(c.l), share*end); got != want {
+				t.Errorf("%+v, %g of %g A: proved %v, want %v", c, share, end, got, want)
 			}
+		}
+	}
+	if stage.CannotRest(stage.Drive{On: 7, Off: -1, Period: period}, stage.Branches{Threshold: 1}, coil(3e-6), 5) {
+		t.Error("proved with nothing to lower the current")
+	}
+}
+
+// TestCannotRestSaturated does the same of a coil that saturates at a few milliamperes:
+// λ(i) = L/r·atan(r·i) with r = √(drop/(1 − drop))/i_sat, so that P = tan(r·Von·T/L)/r.
+func TestCannotRestSaturated(t *testing.T) {
+	const l, sat = 20e-3, 4e-3
+	r := math.Sqrt(0.4/0.6) / sat
+	d, worst := stage.Drive{On: 7, Off: 2, Period: period}, stage.Branches{Off: 90}
+	peak := math.Tan(r*7*period/l) / r
+	end := math.Tan(r/l*period/(1.0/7+1/(2+peak/2*90))) / r / 2
+	for share, want := range map[float64]bool{1 - 1e-9: false, 1 + 1e-9: true} {
+		if got := stage.CannotRest(d, worst, magnetic.NewLinkage(l, sat, 0.4, nil), share*end); got != want {
+			t.Errorf("%g of %g A: proved %v, want %v", share, end, got, want)
 		}
 	}
 }
