@@ -5,7 +5,7 @@ import "fmt"
 // doubtful names entries that contradict each other or that another one displaces.
 func (m *Model) doubtful() (list []observation) {
 	m.design.mosfets(func(path string, s *MOSFET) {
-		if parts := s.QGS2.V + s.QGD.V; s.QG.V < parts {
+		if parts := s.QGS2.V + s.QGD.V; s.QG.V < parts*(1-rounding) {
 			list = append(list, observation{aspect: "gate", Finding: Finding{Level: Caution, Part: partOf(path), Rule: "gate_charge", Value: s.QG.V, Limit: parts, Unit: "C", Source: "the gate-charge curve",
 				Message: "the total gate charge is less than threshold-to-plateau and Miller charge together; one of the three is wrong"}})
 		}
@@ -13,6 +13,9 @@ func (m *Model) doubtful() (list []observation) {
 	list = append(list, m.displaced()...)
 	return append(list, m.nothingToRecover()...)
 }
+
+// rounding is by how much a sum of entries may miss what was meant as their sum.
+const rounding = 1e-9
 
 func partOf(path string) string {
 	if path == "sync_switch" {

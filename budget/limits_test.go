@@ -3,6 +3,8 @@ package budget
 import (
 	"math"
 	"testing"
+
+	"github.com/google/go-cmp/cmp"
 )
 
 // TestGauge puts a value on its caution and on its limit, and at the floats beside
@@ -88,5 +90,89 @@ func TestEfficiencyOfNearlyNothing(t *testing.T) {
 	_, b := solved(t, d, Point{48, 1e-7, 25})
 	if !(b.Pin > 0) || b.Pin > 1e-3 || math.Abs(b.Efficiency-b.Pout/b.Pin) > 1e-15 || !(b.Efficiency > 0) {
 		t.Errorf("efficiency %g of %g W in and %g W out", b.Efficiency, b.Pin, b.Pout)
+	}
+}
+
+// TestGateChargeOfItsParts puts the total gate charge on the sum of two of its parts,
+// which in floats is a little more than 6 nC, and beside it.
+func TestGateChargeOfItsParts(t *testing.T) {
+	for total, level := range map[float64]Level{6e-9 * (1 - 1e-8): Caution, 6e-9: "", 6e-9 * (1 + 1e-8): ""} {
+		d := quiet()
+		for part, m := range map[string]*MOSFET{"switch": d.Switch, "rectifier": d.SyncSwitch} {
+			m.QGS2, m.QGD, m.QG = N(2e-9), N(4e-9), N(total)
+			var list []Finding
+			for _, f := range review(t, d, "gate_charge") {
+				if f.Part == part {
+					list = append(list, f)
+				}
+			}
+			expect(t, "gate charge of the "+part, list, level)
+		}
+	}
+}
+
+// TestNotUsed has one of two entries that displace each other, or both, and as little
+// of each as there can be.
+func TestNotUsed(t *testing.T) {
+	one := Curve{{25, 1}}
+	for _, c := range []struct {
+		name   string
+		change func(d *Design)
+		level  Level
+	}{
+		{"a hot ratio", func(d *Design) { d.Switch.RdsOnHotRatio = N(1.8) }, ""},
+		{"a hot ratio and a row of a curve", func(d *Design) { d.Switch.RdsOnHotRatio, d.Switch.RdsOnCurve = N(1.8), one }, Note},
+		{"a row of a curve", func(d *Design) { d.Switch.RdsOnHotRatio, d.Switch.RdsOnCurve = Num{}, one }, ""},
+		{"a capacitance", func(d *Design) {
+			d.Switch.QOSS, d.Switch.EOSS, d.Switch.COSS, d.Switch.COSSAt = Num{}, Num{}, N(1e-12), N(25)
+		}, ""},
+		{"a capacitance beside no charge", func(d *Design) {
+			d.Switch.QOSS, d.Switch.EOSS, d.Switch.COSS, d.Switch.COSSAt = N(0), Num{}, N(1e-12), N(25)
+		}, ""},
+		{"a capacitance of nothing", func(d *Design) { d.Switch.COSS = N(0) }, ""},
+		{"a small drop", func(d *Design) { d.Inductor.SatDrop = N(0.001) }, ""},
+		{"a small drop and a row of a curve", func(d *Design) { d.Inductor.SatDrop, d.Inductor.LCurve = N(0.001), Curve{{0, 12e-6}} }, Note},
+		{"no drop and a row of a curve", func(d *Design) { d.Inductor.SatDrop, d.Inductor.LCurve = N(0), Curve{{0, 12e-6}} }, ""},
+		{"a winding", func(d *Design) { d.Inductor.ACCurve = nil }, ""},
+		{"a winding and a row of a curve", func(d *Design) { d.Inductor.ACCurve = Curve{{3e5, 3}} }, Note},
+		{"a row of a curve of factors", func(d *Design) { d.Inductor.Winding, d.Inductor.ACCurve = nil, Curve{{3e5, 3}} }, ""},
+	} {
+		d := quiet()
+		if c.name[:9] != "a winding" {
+			d.Inductor.Winding = nil
+		}
+		c.change(d)
+		expect(t, c.name, review(t, d, "not_used"), c.level)
+	}
+}
+
+// TestNoChargeToRecover asks that a stated recovery of nothing is no contradiction.
+func TestNoChargeToRecover(t *testing.T) {
+	d := quiet()
+	d.SyncSwitch.QRR, d.SyncSwitch.QRRVoltage = N(0), N(50)
+	expect(t, "nothing", review(t, d, "recovery_charge"), "")
+}
+
+func TestFinite(t *testing.T) {
+	for v, want := range map[float64]bool{0: true, -math.MaxFloat64: true, math.Inf(1): false, math.Inf(-1): false} {
+		if finite(v) != want {
+			t.Errorf("%g is finite: %v", v, !want)
+		}
+	}
+	if finite(math.NaN()) {
+		t.Error("no number is finite")
+	}
+}
+
+// TestPrepareLeavesTheDesign asks that defaults are filled into a copy.
+func TestPrepareLeavesTheDesign(t *testing.T) {
+	for name, build := range map[string]func() *Design{"lean": lean, "full": full, "diode": quietDiode} {
+		d, same := build(), build()
+		if _, err := Prepare(d); err != nil {
+			t.Fatal(err)
+		}
+		if diff := cmp.Diff(same, d); diff != "" {
+			t.Errorf("%s: Prepare changed it: %s", name, diff)
+		}
 	}
 }
