@@ -176,3 +176,24 @@ func TestPrepareLeavesTheDesign(t *testing.T) {
 		}
 	}
 }
+
+// TestEfficiencyOfNothing asks for 0 where nothing flows in.
+func TestEfficiencyOfNothing(t *testing.T) {
+	d := lean()
+	d.Switch.QG, d.SyncSwitch.QG, d.LightLoad = N(0), N(0), "diode_emulation"
+	_, b := solved(t, d, Point{48, 0, 25})
+	if b.Pin != 0 || b.Efficiency != 0 {
+		t.Errorf("%g W in, efficiency %g", b.Pin, b.Efficiency)
+	}
+}
+
+// TestErrorsByHand takes a last step apart: each watt counts in the loss, and warms its
+// part through its own thermal resistance and the enclosure's.
+func TestErrorsByHand(t *testing.T) {
+	var b Budget
+	s := &situation{m: &Model{theta: [3]float64{5, 7, 11}, enclosure: 2}}
+	b.bookErrors(s, answer{step: unknowns{-16, 32, -64, 128}, iterations: 7, residual: 0.25})
+	if b.LossError != 240 || b.HeatErrors != (Temperatures{32 * 7, 64 * 9, 128 * 13}) || b.Iterations != 7 || b.Residual != 0.25 {
+		t.Errorf("errors %g W and %+v after %d evaluations, residual %g", b.LossError, b.HeatErrors, b.Iterations, b.Residual)
+	}
+}

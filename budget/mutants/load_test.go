@@ -152,6 +152,17 @@ func (s *source) imports(path string) bool {
 	})
 }
 
+// rely returns a package and those that rely on it, nearest first.
+func (t *tree) rely(on *source) []*source {
+	all := []*source{on}
+	for _, s := range t.packages {
+		if s != on && slices.ContainsFunc(all, func(a *source) bool { return s.imports(a.path) }) {
+			all = append(all, s)
+		}
+	}
+	return all
+}
+
 // besides is an importer that knows one package better.
 type besides struct {
 	types.Importer

@@ -115,19 +115,18 @@ func (b *binary) notices(id int) (string, error) {
 type court struct {
 	f        *finder
 	dir      string
-	last     *source // the package that uses all others
 	binaries map[*source]*binary
 }
 
 // open builds the tests that can notice the mutants given.
 func open(f *finder, dir string, mutants []*mutant) (*court, error) {
-	c := &court{f, dir, f.packages[len(f.packages)-1], map[*source]*binary{}}
+	c := &court{f, dir, map[*source]*binary{}}
 	o, err := f.switched(dir)
 	if err != nil {
 		return nil, err
 	}
 	for _, m := range mutants {
-		for _, s := range []*source{m.of.of, c.last} {
+		for _, s := range f.rely(m.of.of) {
 			if c.binaries[s] != nil {
 				continue
 			}
@@ -152,12 +151,10 @@ func build(o *overlay, s *source, root, name string) (*binary, error) {
 	return b, o.test(s, root, b.path)
 }
 
-// try lets the tests of a mutant's own package look at it, then those of the last.
+// try lets the tests of a mutant's own package look at it, then those of the packages
+// that rely on it.
 func (c *court) try(m *mutant) (noticed string, err error) {
-	for i, s := range []*source{m.of.of, c.last} {
-		if i > 0 && s == m.of.of {
-			break
-		}
+	for _, s := range c.f.rely(m.of.of) {
 		b := c.binaries[s]
 		if m.alone {
 			if b, err = c.alone(m, s, b); err != nil {

@@ -124,7 +124,7 @@ func TestToy(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	f := find(tree)
+	f := find(tree, "")
 	c, err := open(f, t.TempDir(), f.mutants)
 	if err != nil {
 		t.Fatal(err)
