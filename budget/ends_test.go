@@ -109,3 +109,24 @@ func TestSlopeAtTheEnds(t *testing.T) {
 		t.Errorf("%g W at %g °C: %g W/K, want %g", watts, low, diode.heatSlope(1), want)
 	}
 }
+
+// TestGreatestGainOfNoIterate asks that the part is named by the iterate without heat,
+// where the last with heat was no answer: nothing, or beyond any number.
+func TestGreatestGainOfNoIterate(t *testing.T) {
+	d := quiet()
+	d.Switch.ThetaJA, d.SyncSwitch.ThetaJA, d.Inductor.ThetaJA = N(0.1), N(0.1), N(40)
+	m, b := solved(t, d, easy)
+	cold := m.situationOf(b)
+	for _, loss := range []float64{0, math.Inf(1), math.Inf(-1)} {
+		last := situation{m: m, frame: cold.frame}
+		last.loss = loss
+		if got := m.greatestGain(&last, cold); got != inductorHeat {
+			t.Errorf("a last loss of %g W: part %d, want the inductor", loss, got)
+		}
+	}
+	last := *cold
+	last.loss = 0.01 // an iterate like others
+	if got := m.greatestGain(&last, &situation{m: m, frame: cold.frame}); got != inductorHeat {
+		t.Errorf("a last loss of 0.01 W: part %d, want the inductor", got)
+	}
+}
