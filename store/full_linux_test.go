@@ -212,6 +212,9 @@ func upgradeWithLittleRoom(dir, path string) error {
 	if err != nil {
 		return err
 	}
+	if err := upgradeWithoutRoom(dir, path, next); err != nil {
+		return err
+	}
 	others, _ := filepath.Glob(filepath.Join(dir, "*"))
 	failed, err := littleRoom(dir, func() error {
 		err := upgrade(context.Background(), path, 1, next, fixedClock()())
@@ -228,6 +231,20 @@ func upgradeWithLittleRoom(dir, path string) error {
 		return fmt.Errorf("only %d failures: not every step met the full disk", failed)
 	}
 	return err
+}
+
+// upgradeWithoutRoom asks the file system itself, which has less than it takes.
+func upgradeWithoutRoom(dir, path string, next schema) error {
+	if err := fill(dir, 4096); err != nil {
+		return err
+	}
+	defer free(dir)
+	_, err := open(context.Background(), path, next, fixedClock())
+	fmt.Println(err)
+	if !errors.Is(err, ErrNoRoom) || !strings.Contains(err.Error(), "bringing it up to date needs about") {
+		return fmt.Errorf("asked before: %w", err)
+	}
+	return nil
 }
 
 func wantOnly(dir string, want ...string) error {

@@ -69,6 +69,9 @@ func (s *Store) ready(ctx context.Context, path string, known schema) error {
 		return err
 	}
 	if version < known.latest {
+		if err := known.fits(path); err != nil {
+			return err
+		}
 		if err := upgrade(ctx, path, version, known, s.now()); err != nil {
 			return err
 		}

@@ -20,6 +20,7 @@ import (
 type schema struct {
 	files  fs.FS
 	latest uint
+	room   func(folder string) (free uint64, known bool)
 }
 
 func newSchema(files fs.FS) (schema, error) {
@@ -37,7 +38,7 @@ func newSchema(files fs.FS) (schema, error) {
 	if !errors.Is(err, fs.ErrNotExist) || last == 0 {
 		return schema{}, fmt.Errorf("reading the steps of the layout: %w", err)
 	}
-	return schema{files, last}, nil
+	return schema{files, last, freeRoom}, nil
 }
 
 // migrate brings the file at path to the latest layout, each step in a

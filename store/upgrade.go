@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"strings"
 	"time"
 )
 
@@ -42,11 +43,23 @@ func copyTo(ctx context.Context, path, kept, draft string) (err error) {
 		return fmt.Errorf("another program is reading it")
 	}
 	for _, copied := range []string{kept, draft} {
-		if err := errors.Join(syncFile(copied), check(ctx, copied)); err != nil {
+		if err := syncFile(copied); err != nil {
 			return err
+		}
+		if err := check(ctx, copied); err != nil {
+			return unsound("a copy of it is", err)
 		}
 	}
 	return nil
+}
+
+// unsound tells damage in a copy from damage in the file itself, which is as good as it
+// was.
+func unsound(what string, err error) error {
+	if isCorrupt(err) {
+		return fmt.Errorf("its layout can't be brought up to date: %s not sound (%s)", what, strings.TrimPrefix(oneLine(err), ErrCorrupt.Error()+": "))
+	}
+	return err
 }
 
 func vacuumInto(ctx context.Context, path string, copies ...string) (err error) {
@@ -78,7 +91,10 @@ func (s schema) apply(ctx context.Context, draft string) error {
 	if err := s.migrate(draft); err != nil {
 		return fmt.Errorf("its layout can't be brought up to date: %w", err)
 	}
-	return check(ctx, draft)
+	if err := check(ctx, draft); err != nil {
+		return unsound("what came of it is", err)
+	}
+	return nil
 }
 
 func syncFile(path string) error {

@@ -37,6 +37,10 @@ var chromium = sync.OnceValue(func() context.Context {
 var stopBrowser = func() {}
 
 func TestMain(m *testing.M) {
+	if file := os.Getenv(asServer); file != "" {
+		fmt.Fprintln(os.Stderr, serveUntilKilled(file))
+		os.Exit(1)
+	}
 	flag.Parse()
 	code := m.Run()
 	stopBrowser()

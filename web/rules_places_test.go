@@ -80,7 +80,7 @@ var rooms = map[string]room{
 	"budget/mutants":   {},
 }
 
-var testModules = strings.Fields("github.com/google/go-cmp pgregory.net/rapid github.com/chromedp/chromedp github.com/chromedp/cdproto gonum.org/v1/gonum golang.org/x/net")
+var testModules = strings.Fields("github.com/google/go-cmp pgregory.net/rapid github.com/chromedp/chromedp github.com/chromedp/cdproto gonum.org/v1/gonum golang.org/x/net modernc.org/libc")
 
 // imports keeps the physics free of the web, the web of SQL, the pages of both.
 func imports(r *repository) (v verdict) {
