@@ -139,14 +139,18 @@ func savedPage(ctx context.Context, saved store.Revision, design *budget.Design,
 	if p.energy, p.worked, err = savedEnergy(ctx, saved, design); err != nil {
 		return page, err
 	}
+	words, same, err := banner(ctx, saved, design, points)
+	if err != nil {
+		return page, err
+	}
+	if err := p.retrace(ctx, same); err != nil {
+		return page, err
+	}
 	if page.Answers, err = p.answers(base, false, files(base)); err != nil {
 		return page, err
 	}
-	page.Answers.File = fileStem(design.Name, saved.Number)
-	if page.Answers.Map, err = p.mapPlace(ctx, base, mapModel(saved)); err != nil {
-		return page, err
-	}
-	page.Answers.Banner, err = banner(ctx, saved, design, points)
+	page.Answers.Banner, page.Answers.File = words, fileStem(design.Name, saved.Number)
+	page.Answers.Map, err = p.mapPlace(ctx, base, mapModel(saved))
 	return page, err
 }
 
@@ -164,9 +168,9 @@ func savedResults(saved store.Revision) (points []Point, findings []Finding, err
 	return points, findings, nil
 }
 
-// banner says so if the program would find something else today. What is shown
-// stays what was saved.
-func banner(ctx context.Context, saved store.Revision, design *budget.Design, points []Point) (string, error) {
+// banner says so if the program would find something else today, and whether the same
+// model finds the same. What is shown stays what was saved.
+func banner(ctx context.Context, saved store.Revision, design *budget.Design, points []Point) (words string, same bool, err error) {
 	asked := make([]budget.Point, len(points))
 	for i, p := range points {
 		asked[i] = budget.Point{Vin: p.Vin, Iout: p.Iout, Ambient: p.Ambient}
@@ -174,15 +178,15 @@ func banner(ctx context.Context, saved store.Revision, design *budget.Design, po
 	now, wrong, err := compute(ctx, design, asked)
 	switch {
 	case err != nil:
-		return "", err
+		return "", false, err
 	case len(wrong) > 0:
 		return fmt.Sprintf("Saved with model %s. Model %s, which runs now, no longer takes this design; the figures below are those that were saved.",
-			saved.Model, budget.ModelVersion), nil
+			saved.Model, budget.ModelVersion), false, nil
 	case differs(points, now.Points):
 		return fmt.Sprintf("Saved with model %s. Model %s, which runs now, gives other figures; those below are the saved ones.",
-			saved.Model, budget.ModelVersion), nil
+			saved.Model, budget.ModelVersion), false, nil
 	}
-	return "", nil
+	return "", saved.Model == budget.ModelVersion, nil
 }
 
 // givenParts lists every entry of a design with its source.

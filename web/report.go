@@ -34,11 +34,15 @@ func reportModel(ctx context.Context, saved store.Revision, d *budget.Design) (v
 	if err != nil {
 		return v, err
 	}
-	if v.Banner, err = banner(ctx, saved, d, points); err != nil {
+	same := false
+	if v.Banner, same, err = banner(ctx, saved, d, points); err != nil {
 		return v, err
 	}
 	p := remembered(d, points, findings, sight{})
 	if p.energy, p.worked, err = savedEnergy(ctx, saved, d); err != nil {
+		return v, err
+	}
+	if err := p.retrace(ctx, same); err != nil {
 		return v, err
 	}
 	a, err := p.answers(base, false, nil)

@@ -35,6 +35,9 @@ func (p *picture) efficiencyChart(base string) (view.Chart, error) {
 	text, err := json.Marshal(data)
 	c := view.Chart{ID: "chart-efficiency", Kind: "efficiency", Title: "Efficiency, %", Caption: "against load, % of " +
 		quantityOf(p.design.Output.Current.V, "A", 3) + ", by input voltage", Data: string(text), Scale: "log"}
+	if p.coarse {
+		c.Caption += "; straight lines between the kept points"
+	}
 	if p.spot.scale == "lin" {
 		c.Scale = "lin"
 	}

@@ -1,6 +1,7 @@
 package web
 
 import (
+	"cmp"
 	"context"
 	"slices"
 
@@ -15,6 +16,7 @@ type picture struct {
 	vins     []voltage
 	columns  []Point // over the load grid, at the voltage looked at
 	lines    []line
+	coarse   bool // the lines go through kept points alone
 	findings []Finding
 	paper    bool    // nothing is opened from it
 	energy   *Energy // of the load profile; nil where there is none
@@ -87,10 +89,48 @@ func (p *picture) lineOf(model *budget.Model, v voltage, row []budget.Budget) li
 		} else {
 			model.At(p.point(v.vin, part), b)
 		}
-		l.points = append(l.points, linePoint{load: part, efficiency: b.Efficiency, settled: b.State == budget.Settled,
-			outside: slices.ContainsFunc(b.Items, func(it budget.Item) bool { return it.Outside }), grid: i >= 0})
+		l.points = append(l.points, linePointOf(part, b, i >= 0))
 	}
 	return l
+}
+
+func linePointOf(part float64, b *budget.Budget, grid bool) linePoint {
+	return linePoint{load: part, efficiency: b.Efficiency, settled: b.State == budget.Settled,
+		outside: slices.ContainsFunc(b.Items, func(it budget.Item) bool { return it.Outside }), grid: grid}
+}
+
+// retrace draws the lines of a revision as finely as a sheet's, if the model that it was
+// kept with is today's and finds the same: what lies between the kept points is then
+// what would have been found. Otherwise the lines go through these alone.
+func (p *picture) retrace(ctx context.Context, same bool) error {
+	p.coarse = !same
+	if !same {
+		return nil
+	}
+	model, err := budget.Prepare(p.design)
+	if err != nil {
+		return err
+	}
+	for i := range p.lines {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		p.lines[i].refine(p, model)
+	}
+	return nil
+}
+
+// refine adds points between those that a line has.
+func (l *line) refine(p *picture, model *budget.Model) {
+	var b budget.Budget
+	first, last := l.points[0].load, l.points[len(l.points)-1].load
+	for _, part := range loads {
+		if part > first && part < last && !slices.Contains(budget.LoadGrid(), part) {
+			model.At(p.point(l.vin, part), &b)
+			l.points = append(l.points, linePointOf(part, &b, false))
+		}
+	}
+	slices.SortFunc(l.points, func(a, b linePoint) int { return cmp.Compare(a.load, b.load) })
 }
 
 func pointsOf(row []budget.Budget) []Point {
