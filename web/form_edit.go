@@ -83,7 +83,7 @@ func (e edit) apply(t Draft) (Draft, error) {
 		if !isEntry(name) {
 			continue
 		}
-		text := texts[len(texts)-1]
+		text := strings.ToValidUTF8(texts[len(texts)-1], "\uFFFD") // as it is kept
 		if n := utf8.RuneCountInString(text); n > maxEntry {
 			return nil, invalid([]budget.FieldError{{Path: name, Message: fmt.Sprintf("has %d characters; at most %d are kept", n, maxEntry)}})
 		}
