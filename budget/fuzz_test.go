@@ -67,7 +67,7 @@ func throw(d *Design, place uint16, v float64) {
 
 // inOrder asks of a settled budget what must be so of any: energy closes, the losses
 // add up, efficiency lies between 0 and 1, and it is as near as it says.
-func inOrder(t *testing.T, b *Budget) {
+func inOrder(t complainer, b *Budget) {
 	t.Helper()
 	sum := 0.0
 	for _, it := range b.Items {
