@@ -4,10 +4,12 @@ package main
 
 import (
 	"context"
+	"embed"
 	"errors"
 	"flag"
 	"fmt"
 	"io"
+	"io/fs"
 	"log/slog"
 	"net"
 	"net/http"
@@ -22,6 +24,12 @@ import (
 	"lossbook/store"
 	"lossbook/web"
 )
+
+// evidence is what the figures were checked against, which a page shows: the files
+// that the tests read too.
+//
+//go:embed testdata/published testdata/measured
+var evidence embed.FS
 
 // The exit codes.
 const (
@@ -172,7 +180,11 @@ func open(ctx context.Context, path string) (*store.Store, error) {
 func serve(ctx context.Context, listener net.Listener, data *store.Store, path string, stdout io.Writer) error {
 	log := slog.New(slog.NewTextHandler(os.Stderr, nil))
 	address := listener.Addr().String()
-	handler, err := web.New(web.Config{Store: data, Log: log, Host: address})
+	proven, err := fs.Sub(evidence, "testdata")
+	if err != nil {
+		return err
+	}
+	handler, err := web.New(web.Config{Store: data, Log: log, Host: address, Evidence: proven})
 	if err != nil {
 		return err
 	}

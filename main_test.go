@@ -172,6 +172,9 @@ func TestProgram(t *testing.T) {
 		t.Errorf("exit code %d: %s", code, &p.stderr)
 	}
 	p = start(t, path)
+	if page := string(p.want(200, "GET", "/accuracy", "")); !strings.Contains(page, "All are met within their tolerance.") {
+		t.Errorf("what the figures were checked against did not come along: %.3000s", page)
+	}
 	if got := p.list().Designs; len(got) != 2 || got[0].Name != "changed" || got[0].Revisions != 1 {
 		t.Errorf("after a restart: %+v", got)
 	}

@@ -2,6 +2,7 @@ package budget_test
 
 import (
 	"encoding/json"
+	"flag"
 	"math"
 	"os"
 	"path/filepath"
@@ -98,10 +99,14 @@ func (a *agreement) compare(where, what string, got, want float64) {
 	}
 }
 
+var update = flag.Bool("update", false, "write how far the figures agree with the case files")
+
 func TestCases(t *testing.T) {
-	total, worst := 0, 0.0
-	for name, c := range cases(t) {
+	all := cases(t)
+	total, worst, run := 0, 0.0, 0
+	for name, c := range all {
 		t.Run(name, func(t *testing.T) {
+			run++
 			m, err := budget.Prepare(&c.Design)
 			if err != nil {
 				t.Fatal(err)
@@ -121,6 +126,46 @@ func TestCases(t *testing.T) {
 		})
 	}
 	t.Logf("%d figures in all, worst off by %.1e", total, worst)
+	if run == len(all) {
+		keepAgreement(t, agreed{run, total, worst})
+	}
+}
+
+// agreed is how far the figures agree with the case files, as it is shown to users.
+type agreed struct {
+	Files   int     `json:"files"`
+	Figures int     `json:"figures"`
+	Worst   float64 `json:"worst"` // share of a figure, rounded up to one digit
+}
+
+// keepAgreement holds what is shown against what was found: as many figures, and a
+// bound that holds and is not ten times what it has to be. With -update it is written.
+func keepAgreement(t *testing.T, found agreed) {
+	t.Helper()
+	const name = "../testdata/published/agreement.json"
+	if *update {
+		digit := math.Pow10(int(math.Floor(math.Log10(found.Worst))))
+		found.Worst = math.Ceil(found.Worst/digit) * digit
+		text, err := json.Marshal(found)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := os.WriteFile(name, append(text, '\n'), 0o644); err != nil {
+			t.Fatal(err)
+		}
+		return
+	}
+	var shown agreed
+	text, err := os.ReadFile(name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := json.Unmarshal(text, &shown); err != nil {
+		t.Fatal(err)
+	}
+	if shown.Files != found.Files || shown.Figures != found.Figures || !(found.Worst <= shown.Worst && found.Worst > shown.Worst/10) {
+		t.Errorf("shown %+v, found %+v: run go test ./budget -run TestCases -update", shown, found)
+	}
 }
 
 func (a *agreement) point(name string, b *budget.Budget, want casePoint) {

@@ -57,6 +57,7 @@ var looks = []struct {
 	{"choice of revisions", func(_ *host, b *tab) {
 		b.open("/compare/choose?r=" + strings.TrimPrefix(frostSheet, "/designs/") + ".2")
 	}},
+	{"accuracy", func(_ *host, b *tab) { b.open("/accuracy") }},
 	{"sheet with an error", func(_ *host, b *tab) {
 		b.expect("status of 422")
 		b.open(frostSheet)

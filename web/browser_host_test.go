@@ -9,6 +9,7 @@ import (
 	"net"
 	"net/http"
 	"net/url"
+	"os"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -62,7 +63,7 @@ func (h *host) start() {
 		h.t.Fatal(err)
 	}
 	h.address = listener.Addr().String()
-	handler, err := New(Config{Store: h.store, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: h.address})
+	handler, err := New(Config{Store: h.store, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: h.address, Evidence: os.DirFS("../testdata")})
 	if err != nil {
 		h.t.Fatal(err)
 	}

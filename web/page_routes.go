@@ -32,6 +32,7 @@ func pageRoutes(r chi.Router, s *Server) {
 	r.Get(revision+"/share", s.handle(s.linksPlace))
 	r.Post(revision+"/share", s.handle(s.makeLink))
 	r.Post(revision+"/share/{share:[0-9]+}/revoke", s.handle(s.revokeLink))
+	r.Get(accuracyAddress, s.handle(s.accuracyPage))
 	r.Get("/compare", s.handle(s.comparePage))
 	r.Get("/compare/choose", s.handle(s.chooserPage))
 }

@@ -65,7 +65,7 @@ func serveSamples(t *testing.T) string {
 	}
 	server := httptest.NewUnstartedServer(nil)
 	address := server.Listener.Addr().String()
-	handler, err := web.New(web.Config{Store: data, Log: slog.New(slog.DiscardHandler), Host: address})
+	handler, err := web.New(web.Config{Store: data, Log: slog.New(slog.DiscardHandler), Host: address, Evidence: os.DirFS("../testdata")})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -7,8 +7,10 @@ package web
 
 import (
 	"errors"
+	"io/fs"
 	"log/slog"
 	"net/http"
+	"sync"
 
 	"github.com/go-chi/chi/v5"
 	"github.com/go-chi/chi/v5/middleware"
@@ -21,6 +23,8 @@ type Config struct {
 	Store *store.Store
 	Log   *slog.Logger
 	Host  string // the host:port it listens on, "127.0.0.1:8470"
+
+	Evidence fs.FS // what the figures were checked against: the folder testdata
 }
 
 // Server holds what the handlers share. It keeps no state of its own: that is
@@ -28,13 +32,14 @@ type Config struct {
 type Server struct {
 	store     *store.Store
 	log       *slog.Logger
+	evidence  func() (*evidence, error) // worked out when it is asked for first; it never changes
 	errorPage func(w http.ResponseWriter, r *http.Request, f *Failure)
 }
 
 // New returns the handler of all addresses.
 func New(c Config) (http.Handler, error) {
-	if c.Store == nil || c.Log == nil {
-		return nil, errors.New("web: a server needs a store and a log")
+	if c.Store == nil || c.Log == nil || c.Evidence == nil {
+		return nil, errors.New("web: a server needs a store, a log and its evidence")
 	}
 	router, err := newRouter(c)
 	if err != nil {
@@ -49,7 +54,8 @@ func newRouter(c Config) (chi.Router, error) {
 	if err != nil {
 		return nil, err
 	}
-	s := &Server{store: c.Store, log: c.Log, errorPage: plainErrorPage}
+	s := &Server{store: c.Store, log: c.Log, errorPage: plainErrorPage,
+		evidence: sync.OnceValues(func() (*evidence, error) { return gather(c.Evidence) })}
 	r := chi.NewRouter()
 	r.Use(secureHeaders, s.recovered, s.onlyHosts(hosts), s.sameOrigin, boundedBody, middleware.GetHead)
 	r.NotFound(s.handle(func(http.ResponseWriter, *http.Request) error { return errNoPage }))

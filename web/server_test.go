@@ -8,6 +8,7 @@ import (
 	"log/slog"
 	"net/http"
 	"net/http/httptest"
+	"os"
 	"path/filepath"
 	"regexp"
 	"strings"
@@ -38,7 +39,7 @@ func newSite(t *testing.T) *site {
 	}
 	t.Cleanup(func() { data.Close() })
 	s := &site{t: t, store: data, log: &bytes.Buffer{}}
-	s.router, err = newRouter(Config{Store: data, Log: slog.New(slog.NewTextHandler(s.log, nil)), Host: testHost})
+	s.router, err = newRouter(Config{Store: data, Log: slog.New(slog.NewTextHandler(s.log, nil)), Host: testHost, Evidence: os.DirFS("../testdata")})
 	if err != nil {
 		t.Fatal(err)
 	}

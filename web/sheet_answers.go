@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"lossbook/budget"
 	"lossbook/web/quantity"
@@ -21,7 +22,7 @@ func (p *picture) answers(base string, typed bool, take []view.Link) (view.Answe
 		return view.Answers{}, err
 	}
 	a := view.Answers{Views: p.spot.views(p.design, base, typed, p.vins), Head: p.head(), Flow: p.flow(), Charts: charts, Ledger: p.ledger(base, take),
-		Working: p.working(base), Waves: waves, Weights: p.weights()}
+		Working: p.working(base), Waves: waves, Weights: p.weights(), Shared: strings.HasPrefix(base, sharePrefix)}
 	for _, f := range findingLines(p.findings) {
 		if f.Level == string(budget.Note) {
 			a.Notes = append(a.Notes, f)

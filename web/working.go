@@ -2,6 +2,7 @@ package web
 
 import (
 	"slices"
+	"strings"
 
 	"lossbook/budget"
 	"lossbook/budget/formula"
@@ -30,6 +31,9 @@ func (p *picture) working(base string) *view.Working {
 		w.Unlike = q.Reason
 	default:
 		p.explain(w, q, f)
+		if !strings.HasPrefix(base, sharePrefix) {
+			w.Checked = checkedAt(p.spot.working)
+		}
 	}
 	return w
 }

@@ -182,6 +182,17 @@ func (g Figure) Expected() string {
 	return g.Printed
 }
 
+// Reprinted reports whether a document prints something else than what its figure is
+// held against, digits aside.
+func (g Figure) Reprinted() bool {
+	if g.Printed == "" || g.Recomputed == "" {
+		return false
+	}
+	printed, err := quantity(g.Printed)
+	again, _ := quantity(g.Recomputed)
+	return err != nil || math.Abs(printed-again) > 1e-9*math.Abs(again)
+}
+
 // units are what a figure may be given in, over the base unit that the model
 // computes in.
 var units = map[string]float64{

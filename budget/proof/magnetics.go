@@ -36,7 +36,7 @@ func ferrite(t *Trial) {
 func dowell(t *Trial) {
 	foil, f := t.In("foil"), t.In("frequency")
 	t.Is("foil, ξ", foil/magnetic.SkinDepth(f, 20))
-	for layers, name := range map[float64]string{1: "foil, one layer", 2: "foil, two layers", 3: "foil, three layers"} {
+	for layers, name := range map[float64]string{1: "foil, 1 layer", 2: "foil, 2 layers", 3: "foil, 3 layers"} {
 		factor, _ := magnetic.FoilWinding(foil, layers, 1).Factor(f, 20)
 		t.Is(name, factor)
 	}

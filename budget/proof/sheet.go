@@ -89,7 +89,7 @@ func (s sheet) drawing(value float64, of func(solution) float64) solution {
 
 // boundary halves down to where a condition that holds at low and not at high ends.
 func boundary(low, high float64, holds func(float64) bool) float64 {
-	for range 60 {
+	for range 50 {
 		if mid := low + (high-low)/2; holds(mid) {
 			low = mid
 		} else {

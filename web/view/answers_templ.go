@@ -165,7 +165,7 @@ func Answer(a Answers) templ.Component {
 				return templ_7745c5c3_Err
 			}
 		}
-		templ_7745c5c3_Err = care().Render(ctx, templ_7745c5c3_Buffer)
+		templ_7745c5c3_Err = care(a.Shared).Render(ctx, templ_7745c5c3_Buffer)
 		if templ_7745c5c3_Err != nil {
 			return templ_7745c5c3_Err
 		}

@@ -74,7 +74,7 @@ func Designs(l List) templ.Component {
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
-			templ_7745c5c3_Err = care().Render(ctx, templ_7745c5c3_Buffer)
+			templ_7745c5c3_Err = care(false).Render(ctx, templ_7745c5c3_Buffer)
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}

@@ -583,7 +583,7 @@ func MapOwnPage(m MapPage) templ.Component {
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
-			templ_7745c5c3_Err = care().Render(ctx, templ_7745c5c3_Buffer)
+			templ_7745c5c3_Err = care(m.Shared).Render(ctx, templ_7745c5c3_Buffer)
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}

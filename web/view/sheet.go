@@ -77,6 +77,7 @@ type Answers struct {
 	Sizing   *Sizing
 	Missing  []MissingPart
 	Links    *Links // of a revision; nil where none can be made
+	Shared   bool   // its reader has a link and nothing else
 }
 
 // Views are the choices of what is shown, kept in the address.

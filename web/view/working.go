@@ -16,6 +16,7 @@ type Working struct {
 	Far     []WorkingStep // of their terms
 	Behind  string        // "and 7 more behind these"
 	Entries []WorkingEntry
+	Checked string // the address that says how such a figure was checked, "" for a reader without other pages
 }
 
 // WorkingStep is one quantity: its formula in symbols, the same with numbers, and what
