@@ -208,12 +208,16 @@ func (e *evidence) covers() (items, findings []view.Cover) {
 			return cmp.Or(cmp.Compare(len(a.Text), len(b.Text)), cmp.Compare(a.Text, b.Text))
 		})
 	}
+	checks["inductor.core"] = append(checks["inductor.core"], view.Link{Text: "measured", Href: "#core"})
 	cover := func(what, name string) view.Cover {
 		return view.Cover{Name: name, ID: "item-" + what, Checks: checks[what], Reason: reasons[what]}
 	}
 	for _, row := range budget.Ledger(&budget.Design{}) {
-		it := Item{Part: row.Part, Kind: row.Kind}
-		items = append(items, cover(row.Part+"."+row.Kind, joined(", ", partWords[row.Part], itemWords(it))))
+		part, words := partWords[row.Part], itemWords(Item{Part: row.Part, Kind: row.Kind})
+		if !strings.HasPrefix(words, part) {
+			words = part + ", " + words
+		}
+		items = append(items, cover(row.Part+"."+row.Kind, words))
 	}
 	items = append(items, cover("layout", "copper and other series resistances"))
 	for _, rule := range rulesAmong(checks, reasons) {
