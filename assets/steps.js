@@ -14,21 +14,22 @@
   const entry = (element) => element?.matches?.('#fields :is(input, select)[name]');
   const named = (name) => Array.from(fields()?.querySelectorAll('[name]') ?? []).find((input) => input.name === name);
 
-  // What was typed and not taken yet, by the entry's name.
+  // What was typed and not taken yet, by the entry's name: its text and the caret.
   const untaken = new Map();
 
   document.addEventListener('input', ({target}) => {
-    if (entry(target)) untaken.set(target.name, target.value);
+    if (entry(target)) untaken.set(target.name, {text: target.value, caret: target.selectionStart});
   }, true);
 
-  // An answer that replaces the entries leaves open what was open, where it stood.
+  // An answer that replaces the entries leaves open what was open, where it stood, and
+  // what was typed since it was asked for.
   let open = [];
   let scrolled = 0;
 
   document.addEventListener('htmx:before:response', ({detail: {ctx}}) => {
     if (!fields()) return;
     if (ctx.response.status === 200 || ctx.response.status === 422) {
-      for (const [name, text] of untaken) {
+      for (const [name, {text}] of untaken) {
         if (ctx.request.body?.get?.(name) === text) untaken.delete(name);
       }
     }
@@ -36,33 +37,34 @@
     scrolled = document.querySelector('.inputs').scrollTop;
   });
 
-  document.addEventListener('htmx:after:swap', ({detail: {ctx}}) => {
-    if (!fields()) return;
+  // Right behind the swap, before another key can be pressed.
+  document.addEventListener('htmx:before:settle', ({target}) => {
+    if (target !== fields()) return;
     for (const id of open) document.getElementById(id)?.toggleAttribute('open', true);
-    for (const [name, text] of untaken) {
+    for (const [name, {text, caret}] of untaken) {
       const input = named(name);
       if (!input) untaken.delete(name);
-      else if (input.value !== text) input.value = text;
+      else if (input.value !== text) {
+        input.value = text;
+        if (caret !== null && input === document.activeElement) input.setSelectionRange(caret, caret);
+      }
     }
     document.querySelector('.inputs').scrollTop = scrolled;
-    if (ctx?.sourceElement?.matches?.('#undo, #redo')) show(document.getElementById(document.getElementById('said').dataset.to));
   });
 
-  // The entry takes the focus from another entry, or from nothing; a button that was
-  // pressed keeps it, to be pressed again.
-  function show(changed) {
-    if (!changed) return;
-    for (let around = changed.closest('details'); around; around = around.parentElement.closest('details')) around.open = true;
-    changed.scrollIntoView({block: 'nearest'});
-    flash(changed.closest('.f') ?? changed);
-    if (document.activeElement !== document.body && !fields().contains(document.activeElement)) return;
-    const input = changed.matches('input, select') ? changed : changed.querySelector('input, select, button');
-    input?.focus({preventScroll: true});
-  }
+  document.addEventListener('htmx:after:swap', ({detail: {ctx}}) => {
+    if (fields() && ctx?.sourceElement?.matches?.('#undo, #redo')) show(document.getElementById(document.getElementById('said').dataset.to));
+  });
 
-  function flash(row) {
-    row.classList.add('flash');
-    setTimeout(() => row.classList.remove('flash'), 1200);
+  // The entry takes the focus from the entry in which the keys were pressed, or from
+  // nothing. A button that was pressed keeps it, to be pressed again, and so does
+  // whatever one has gone on to since.
+  let origin = '';
+  function show(changed) {
+    const {activeElement} = document;
+    const focus = activeElement === document.body || fields().contains(activeElement) && activeElement.id === origin && !untaken.has(activeElement.name);
+    origin = changed?.id ?? ''; // the next of several presses goes on from here
+    changed?.dispatchEvent(new CustomEvent('bring', {bubbles: true, detail: {focus}}));
   }
 
   function button(event) {
@@ -79,6 +81,7 @@
     const press = button(event);
     if (!press || writing(event.target) && (!entry(event.target) || untaken.has(event.target.name))) return;
     event.preventDefault();
+    origin = document.activeElement.id;
     press.click();
   });
 })();

@@ -89,10 +89,14 @@ func (b form) stage(p budget.Part) []view.Section {
 // ripple is the one entry that is no part of a design: what an inductor is to
 // be chosen by.
 func (b form) ripple() view.Field {
-	field := b.field(budget.Field{Path: rippleRatio, Key: "ripple_ratio", Symbol: "r", Name: "Ripple ratio wanted",
-		Where: "peak to peak over mean inductor current, at full load and nominal input", Default: defaultRipple}, rippleRatio)
+	field := b.field(rippleField(), rippleRatio)
 	field.Source = nil
 	return field
+}
+
+func rippleField() budget.Field {
+	return budget.Field{Path: rippleRatio, Key: "ripple_ratio", Symbol: "r", Name: "Ripple ratio wanted",
+		Where: "peak to peak over mean inductor current, at full load and nominal input", Default: defaultRipple}
 }
 
 func (b form) section(p budget.Part) view.Section {

@@ -18,7 +18,8 @@ func frame(title string) view.Page {
 		Scripts: []string{
 			assets.URL("lib/htmx.min.js"), assets.URL("lib/d3.min.js"), assets.URL("lib/plot.umd.min.js"),
 			assets.URL("chart.js"), assets.URL("chart-lines.js"), assets.URL("chart-stack.js"), assets.URL("chart-waves.js"), assets.URL("chart-map.js"),
-			assets.URL("chart-take.js"), assets.URL("later.js"), assets.URL("app.js"), assets.URL("steps.js"), assets.URL("working.js"),
+			assets.URL("chart-take.js"), assets.URL("later.js"), assets.URL("app.js"), assets.URL("bring.js"), assets.URL("steps.js"), assets.URL("find.js"),
+			assets.URL("working.js"),
 		},
 	}}
 }

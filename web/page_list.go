@@ -27,6 +27,9 @@ func (s *Server) showList(w http.ResponseWriter, r *http.Request, status int, sp
 	}
 	list := view.List{Page: frame("Designs"), Samples: sampleOptions(), Spec: spec.fields(), Problems: problems}
 	list.Page.Failed = len(problems) > 0
+	if list.Hint, err = s.hintFor(r.Context(), "list", "/"); err != nil {
+		return err
+	}
 	for _, d := range kept {
 		entry, err := listEntry(r.Context(), d)
 		if err != nil {

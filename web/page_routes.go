@@ -12,11 +12,13 @@ func pageRoutes(r chi.Router, s *Server) {
 	s.errorPage = failurePage
 	r.Get("/assets/*", assets.Handler().ServeHTTP)
 	r.Get("/", s.handle(s.listPage))
+	r.Post("/hints/{hint:[a-z]+}/away", s.handle(s.putAway))
 	r.Post("/designs", s.handle(s.startDesign))
 	r.Post("/designs/upload", s.handle(s.uploadDesign))
 	const design = "/designs/{id:[0-9]+}"
 	r.Get(design, s.handle(s.sheetPage))
 	r.Post(design, s.handle(s.editSheet))
+	r.Get(design+"/find", s.handle(s.findPage))
 	r.Post(design+"/undo", s.handle(s.undoEdit))
 	r.Post(design+"/redo", s.handle(s.redoEdit))
 	r.Get(design+"/rename", s.handle(s.renamePage))

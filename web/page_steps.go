@@ -54,16 +54,16 @@ func (s *Server) walk(w http.ResponseWriter, r *http.Request, step func(context.
 	if err != nil {
 		return err
 	}
-	return back(w, r, stepAddress(sh, v.Steps.To))
+	return back(w, r, sh.entryAddress(url.Values{"step": {sh.way}}, v.Steps.To))
 }
 
-// stepAddress leads to the entry that a step has changed.
-func stepAddress(sh *sheet, to string) string {
-	q := url.Values{"step": {sh.way}}
+// entryAddress is the sheet as it is looked at, with an entry in sight and what else
+// is to be said.
+func (s *sheet) entryAddress(q url.Values, to string) string {
 	if to != "" {
 		q.Set("show", to)
 	}
-	address, also := sh.sight.address(sh.address()), "?"
+	address, also := s.sight.address(s.address()), "?"
 	if strings.Contains(address, "?") {
 		also = "&"
 	}

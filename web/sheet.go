@@ -24,6 +24,7 @@ type sheet struct {
 	revisions []store.RevisionHead
 	sight     sight
 	steps     store.Steps
+	hint      view.Hint
 	note      string // typed for the next revision
 	way       string // how the entries came about: a step undone or redone
 	show      string // id of an entry to be in sight
@@ -42,6 +43,9 @@ func (s *Server) openSheet(ctx context.Context, kept store.Design, draft Draft, 
 	sh.beside = append(sh.beside, ripple...)
 	var err error
 	if sh.steps, err = s.store.Steps(ctx, kept.ID); err != nil {
+		return nil, err
+	}
+	if sh.hint, err = s.hintFor(ctx, "sheet", g.address(sh.address())); err != nil {
 		return nil, err
 	}
 	if len(kept.Complete) > 0 {
@@ -76,6 +80,8 @@ func (s *sheet) model(ctx context.Context) (view.Sheet, error) {
 	}
 	v.Sections, v.Profile = b.sections(), b.profile()
 	v.Hidden = s.sight.hidden()
+	v.Hint = s.hint
+	v.Find = view.FindBox{Send: s.address() + "/find", View: v.Hidden}
 	v.Hidden.Version, v.Hidden.Structure = strconv.FormatInt(s.kept.Version, 10), s.draft.structure()
 	var err error
 	if v.Answers, err = s.answersOf(ctx); err != nil {

@@ -161,9 +161,5 @@ func run(was, now Draft) string {
 	if len(list) != 1 || len(list[0].keys) != 1 {
 		return ""
 	}
-	key := list[0].keys[0]
-	if rowed(list[0].place) && !(was.has(key) && now.has(key)) {
-		return "" // a row that came or went
-	}
-	return key
+	return list[0].keys[0]
 }

@@ -8,6 +8,7 @@ type List struct {
 	Starts   []Option // designs to start a copy of
 	Spec     []Field  // what a design has to do, to start one from
 	Problems []Problem
+	Hint     Hint
 }
 
 // Entry is one design of the list.
@@ -33,4 +34,5 @@ type Nameplate struct {
 	ID       string
 	Field    Field
 	Problems []Problem
+	Hint     Hint
 }

@@ -11,6 +11,8 @@ type Sheet struct {
 	Problems []Problem
 	Since    Since
 	Steps    Steps
+	Find     FindBox
+	Hint     Hint
 	Sections []Section
 	Profile  Profile
 	Whole    bool // a live answer replaces all entries: rows came or went
@@ -83,6 +85,7 @@ type Answers struct {
 // Views are the choices of what is shown, kept in the address.
 type Views struct {
 	Href    string // where the form asks
+	Key     string // of the form: another one for each view, since a swap keeps what stands in inputs
 	Typed   bool   // any voltage and ambient may be typed, not only those listed
 	Vins    []Link
 	Vin     Field
