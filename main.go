@@ -90,10 +90,13 @@ func run(ctx context.Context, args []string, stdout io.Writer) error {
 	if err != nil {
 		return refuse(err)
 	}
-	return errors.Join(serve(ctx, listener, data, o.data, stdout), data.Close())
+	return errors.Join(serve(ctx, listener, data, o, stdout), data.Close())
 }
 
-type options struct{ listen, data string }
+type options struct {
+	listen, data string
+	gallery      bool // for those who change the pages
+}
 
 func readOptions(args []string, help io.Writer) (options, error) {
 	var o options
@@ -101,6 +104,7 @@ func readOptions(args []string, help io.Writer) (options, error) {
 	flags.SetOutput(io.Discard)
 	flags.StringVar(&o.listen, "listen", "127.0.0.1:8470", "`address` to serve at, on this machine; port 0 takes a free one")
 	flags.StringVar(&o.data, "data", "", "data `file` (default: lossbook/lossbook.db in the user's data directory)")
+	flags.BoolVar(&o.gallery, "gallery", false, "serve pages of awkward data at /gallery too, to judge a change of Lossbook by")
 	if err := flags.Parse(args); err != nil {
 		if errors.Is(err, flag.ErrHelp) {
 			flags.SetOutput(help)
@@ -177,14 +181,14 @@ func open(ctx context.Context, path string) (*store.Store, error) {
 }
 
 // serve answers until ctx ends, and then until the requests at work are done.
-func serve(ctx context.Context, listener net.Listener, data *store.Store, path string, stdout io.Writer) error {
+func serve(ctx context.Context, listener net.Listener, data *store.Store, o options, stdout io.Writer) error {
 	log := slog.New(slog.NewTextHandler(os.Stderr, nil))
 	address := listener.Addr().String()
 	proven, err := fs.Sub(evidence, "testdata")
 	if err != nil {
 		return err
 	}
-	handler, err := web.New(web.Config{Store: data, Log: log, Host: address, Evidence: proven})
+	handler, err := web.New(web.Config{Store: data, Log: log, Host: address, Evidence: proven, Gallery: o.gallery})
 	if err != nil {
 		return err
 	}
@@ -194,7 +198,7 @@ func serve(ctx context.Context, listener net.Listener, data *store.Store, path s
 	if err := data.Announce("http://" + address + "/"); err != nil {
 		log.Warn("a second start will not be able to name this address", "cause", err)
 	}
-	fmt.Fprintf(stdout, "Lossbook at http://%s/ · data in %s\n", address, path)
+	fmt.Fprintf(stdout, "Lossbook at http://%s/ · data in %s\n", address, o.data)
 	select {
 	case err := <-failed:
 		return err

@@ -33,16 +33,23 @@ type host struct {
 	server        *http.Server
 	done          chan struct{}
 	pause         time.Duration // before each answer to an edit
+	gallery       bool          // is served too
 }
 
 // serve starts a server as a first start does, with the samples.
 func serve(t *testing.T) *host {
 	t.Helper()
-	needBrowser(t)
-	h := &host{t: t, file: filepath.Join(t.TempDir(), "data.db"), address: "127.0.0.1:0"}
-	h.start()
-	t.Cleanup(h.stop)
+	h := &host{t: t}
+	h.serve()
 	return h
+}
+
+func (h *host) serve() {
+	h.t.Helper()
+	needBrowser(h.t)
+	h.file, h.address = filepath.Join(h.t.TempDir(), "data.db"), "127.0.0.1:0"
+	h.start()
+	h.t.Cleanup(h.stop)
 }
 
 func (h *host) start() {
@@ -63,7 +70,7 @@ func (h *host) start() {
 		h.t.Fatal(err)
 	}
 	h.address = listener.Addr().String()
-	handler, err := New(Config{Store: h.store, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: h.address, Evidence: os.DirFS("../testdata")})
+	handler, err := New(Config{Store: h.store, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: h.address, Evidence: os.DirFS("../testdata"), Gallery: h.gallery})
 	if err != nil {
 		h.t.Fatal(err)
 	}

@@ -25,6 +25,7 @@ type Config struct {
 	Host  string // the host:port it listens on, "127.0.0.1:8470"
 
 	Evidence fs.FS // what the figures were checked against: the folder testdata
+	Gallery bool // pages of awkward data are served too
 }
 
 // Server holds what the handlers share. It keeps no state of its own: that is
@@ -61,6 +62,9 @@ func newRouter(c Config) (chi.Router, error) {
 	r.NotFound(s.handle(func(http.ResponseWriter, *http.Request) error { return errNoPage }))
 	r.MethodNotAllowed(s.handle(methodNotAllowed(r)))
 	routes(r, s)
+	if c.Gallery {
+		galleryRoutes(r, s)
+	}
 	return r, nil
 }
 
