@@ -49,6 +49,37 @@ var looks = []struct {
 		b.replace("switch.rds_on", "14m")
 		b.says("#since", "11 mΩ")
 	}},
+	{"sheet with a working", func(_ *host, b *tab) {
+		b.open(frostSheet)
+		b.click(`e.matches('.ledger tr.p-inductor a.figure')`)
+		b.wait(`document.getElementById('working')`)
+	}},
+	{"sheet after an undo", func(_ *host, b *tab) {
+		b.open(frostSheet)
+		b.click(`e.id === 'undo'`)
+		b.says("#said", "Undone")
+		b.wait(`!document.querySelector('.f.flash')`)
+	}},
+	{"sheet with entries found", func(_ *host, b *tab) {
+		b.open(frostSheet)
+		evaluate[chromedp.Void](b, `document.getElementById('find-q').focus()`)
+		b.types("gate")
+		b.offered("Gate")
+	}},
+	{"sheet with nothing found", func(_ *host, b *tab) {
+		b.open(frostSheet)
+		evaluate[chromedp.Void](b, `document.getElementById('find-q').focus()`)
+		b.types("xyzzy")
+		b.says("#found", "No entry is called that.")
+	}},
+	{"entries found", func(_ *host, b *tab) { b.open(frostSheet + "/find?q=gate") }},
+	{"shared page", func(h *host, b *tab) {
+		_, token, err := h.store.CreateShare(context.Background(), 2, 1, "for the review")
+		if err != nil {
+			h.t.Fatal(err)
+		}
+		b.open(sharePrefix + token)
+	}},
 	{"comparison", func(h *host, b *tab) {
 		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "second"})
 		pin := strings.TrimPrefix(frostSheet, "/designs/")
