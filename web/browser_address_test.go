@@ -33,6 +33,7 @@ var viewings = []viewing{
 	clicking("input voltage", `e.matches('.ask nav a') && e.textContent.trim() === '14.4 V'`),
 	clicking("load", `e.matches('.ledger thead a') && e.textContent.trim() === '50'`),
 	clicking("axis", saying("linear")),
+	clicking("map", `e.matches('#map header a')`),
 	clicking("working", `e.matches('.ledger tr.p-inductor a.figure')`),
 	{"another point", func(b *tab) {
 		b.t.Helper()
@@ -50,12 +51,20 @@ var viewings = []viewing{
 // opensTheSame opens the tab's address where nothing is known of it.
 func (b *tab) opensTheSame(name string) {
 	b.t.Helper()
-	b.drawn()
+	b.fetched()
 	here := evaluate[string](b, `location.pathname + location.search + location.hash`)
 	clean := b.host.visit(here)
+	clean.fetched()
 	if want, got := evaluate[string](b, shown), evaluate[string](clean, shown); got != want {
 		b.t.Errorf("%s: %s shows in a clean profile\n%s\nand here\n%s", name, here, got, want)
 	}
+}
+
+// fetched waits for what is fetched after the page, and for the charts.
+func (b *tab) fetched() {
+	b.t.Helper()
+	b.wait(`[...document.querySelectorAll('loss-later')].every(e => e.querySelector('figure'))`)
+	b.drawn()
 }
 
 // view changes what is looked at by each control, and opens the address that this
@@ -87,7 +96,7 @@ func TestAddressHoldsTheView(t *testing.T) {
 		keys := b.view(viewings)
 		for i := range reflect.TypeFor[sight]().NumField() {
 			key := reflect.TypeFor[sight]().Field(i).Name
-			if typed := key == "ambient" && path != frostSheet; !keys[key] && !typed {
+			if typed := key == "ambient" && path != frostSheet; key != "whole" && !keys[key] && !typed {
 				t.Errorf("%s: no control put %s into the address", path, key)
 			}
 		}

@@ -25,7 +25,7 @@ type Config struct {
 	Host  string // the host:port it listens on, "127.0.0.1:8470"
 
 	Evidence fs.FS // what the figures were checked against: the folder testdata
-	Gallery bool // pages of awkward data are served too
+	Gallery  bool  // pages of awkward data are served too
 }
 
 // Server holds what the handlers share. It keeps no state of its own: that is
