@@ -16,6 +16,7 @@ import (
 
 	"lossbook/assets"
 	"lossbook/budget"
+	"lossbook/store"
 	"lossbook/web/view"
 )
 
@@ -120,9 +121,8 @@ func FuzzSheet(f *testing.F) {
 		if again, err := readDraft(kept); err != nil || !maps.Equal(draft, again) {
 			t.Errorf("kept as something else: %v\n%s", err, cmp.Diff(draft, again))
 		}
-		s := &sheet{draft: draft, complete: d, sight: e.sight}
-		s.design, s.wrong = draft.design()
-		_, s.beside = draft.profile(s.design)
+		s := standing(draft, store.Design{ID: 1, Version: 1, Draft: kept}, d)
+		s.sight = e.sight
 		v, err := s.model(t.Context())
 		if err != nil {
 			t.Fatal(err)

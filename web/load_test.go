@@ -20,6 +20,7 @@ import (
 	"time"
 
 	"lossbook/assets"
+	"lossbook/store"
 )
 
 // load is how many edits a second TestLoad sends, for ten seconds; without it it sends
@@ -78,8 +79,11 @@ func editsOf(t *testing.T) []change {
 	for n := range 7 {
 		draft := loadDraft(t)
 		draft["switch.rds_on"] = strconv.Itoa(10+2*n) + "m"
-		s := &sheet{draft: draft}
-		s.design, s.wrong = draft.design()
+		kept, _, err := draft.stored()
+		if err != nil {
+			t.Fatal(err)
+		}
+		s := standing(draft, store.Design{ID: 1, Version: 1, Draft: kept}, nil)
 		v, err := s.model(t.Context())
 		if err != nil || v.Answers.Head == nil || v.Answers.Head.Loss == "" {
 			t.Fatalf("no figures: %v, %v", s.wrong, err)

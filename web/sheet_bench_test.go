@@ -15,6 +15,7 @@ import (
 	"github.com/go-chi/chi/v5"
 
 	"lossbook/assets"
+	"lossbook/budget"
 	"lossbook/store"
 	"lossbook/web/view"
 )
@@ -28,11 +29,14 @@ func BenchmarkSheet(b *testing.B) {
 		b.Fatal(err)
 	}
 	draft := draftOf(d)
+	kept, _, err := draft.stored()
+	if err != nil {
+		b.Fatal(err)
+	}
 	b.Run("answer", func(b *testing.B) {
 		b.ReportAllocs()
 		for b.Loop() {
-			s := &sheet{draft: draft, complete: d}
-			s.design, s.wrong = draft.design()
+			s := standing(draft, store.Design{ID: 1, Version: 1, Draft: kept}, d)
 			v, err := s.model(b.Context())
 			if err != nil {
 				b.Fatal(err)
@@ -65,6 +69,14 @@ func BenchmarkSheet(b *testing.B) {
 			version++
 		}
 	})
+}
+
+// standing is the sheet of a draft as it stands in the store, without revisions.
+func standing(draft Draft, kept store.Design, complete *budget.Design) *sheet {
+	s := &sheet{kept: kept, draft: draft, complete: complete}
+	s.design, s.wrong = draft.design()
+	_, s.beside = draft.profile(s.design)
+	return s
 }
 
 // shop is a server with one design, and the version its next edit starts from.
