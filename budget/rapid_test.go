@@ -181,7 +181,7 @@ func TestCurrentsScale(t *testing.T) {
 		prepared(t, d).At(p, &a)
 		w := wider(d, k)
 		if len(Validate(w)) > 0 {
-			t.Skip("beyond what Validate takes")
+			return // beyond what Validate takes
 		}
 		prepared(t, w).At(Point{p.Vin, k * p.Iout, p.Ambient}, &b)
 		if a.State != b.State || a.Mode != b.Mode {
