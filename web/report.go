@@ -49,7 +49,10 @@ func reportModel(ctx context.Context, saved store.Revision, d *budget.Design) (v
 	if err != nil {
 		return v, err
 	}
-	v.Head, v.HeadAt, v.Charts, v.Weights, v.Warnings, v.Notes = a.Head, a.Views.At, a.Charts, a.Weights, a.Warnings, a.Notes
+	v.Head, v.HeadAt, v.Flow, v.Charts, v.Weights, v.Warnings, v.Notes = a.Head, a.Views.At, a.Flow, a.Charts, a.Weights, a.Warnings, a.Notes
+	if v.Flow != nil {
+		v.Flow.Column = view.Link{} // the ledgers follow
+	}
 	for i := range v.Charts {
 		v.Charts[i].Scales = nil // a choice, and paper has none
 	}

@@ -11,6 +11,7 @@ type Report struct {
 	Back            Link
 	Head            *Head
 	HeadAt          string // the point it holds at
+	Flow            *Flow
 	Conditions      Given
 	Parts           []Given
 	Ledgers         []Ledger // one for each input voltage
