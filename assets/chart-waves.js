@@ -9,26 +9,29 @@
       "intervals": [{"name": "t1", "from": 0, "to": 1.8}, …],        from 0 to the period
       "rows":      [{"name": "Switch current, A", "short": "switch", "cls": "p-switch", "unit": "A",
                      "points": [[0, 3.1], [1.8, 5.2], [1.8, 0], [4, 0]],
-                     "levels": [{"text": "rms 2.9 A", "value": 2.9, "dash": 1}, …]}]}
+                     "levels": [{"name": "rms", "text": "2.9", "value": 2.9, "dash": 1}, …]}]}
      Two periods are drawn. Every row has its own scale, which holds 0. */
 (() => {
   'use strict';
 
   const {kind, digits, quantity, widest, partFill, drawNames, frame} = lossChart;
   const periods = 2;
-  const rowHeight = 58; // px of a row's plot
+  const rowHeight = 56; // px of a row's plot
   const narrow = 560; // px; below it the levels are read above the plot, not beside it
   const dashes = [null, '6 3', '1.5 2.5'];
   const steps = 12; // stops of the cursor in an interval
+  const tickRoom = 16; // px between ticks, a little over the height of their names
   const nearest = 17; // px between the names of two intervals
+
+  const labelOf = (level, row) => `${level.name}\u00a0${level.text}\u00a0${row.unit}`;
 
   // Where each row's name and plot stand, from the top.
   function layOut(data, width) {
     const beside = width >= narrow;
-    const levels = data.rows.flatMap((row) => row.levels.map((level) => level.text));
+    const levels = data.rows.flatMap((row) => row.levels.map((level) => labelOf(level, row)));
     const {marginTop, marginBottom, ...rest} = frame(width, beside ? widest(levels) : 0);
-    const head = beside ? 24 : 40, pitch = head + rowHeight;
-    const rows = data.rows.map((_, i) => ({name: marginTop + i * pitch + 15, top: marginTop + i * pitch + head}));
+    const head = beside ? 29 : 48, pitch = head + rowHeight;
+    const rows = data.rows.map((_, i) => ({name: marginTop + i * pitch + 19, top: marginTop + i * pitch + head}));
     return {...rest, beside, rows, marginTop, marginBottom, height: marginTop + data.rows.length * pitch + marginBottom};
   }
 
@@ -43,8 +46,15 @@
 
   const line = (d) => `M${d.map((p) => p.map((v) => Math.round(v * 100) / 100).join(' ')).join('L')}`;
 
+  // Where they would stand too close, every other tick; 0 is always one.
+  function ticksOf(y) {
+    const ticks = y.ticks(4), step = ticks[1] - ticks[0];
+    const close = Math.abs(y(ticks[1]) - y(ticks[0])) < tickRoom;
+    return close ? ticks.filter((t) => Math.round(t / step) % 2 === 0) : ticks;
+  }
+
   function drawGrid(g, y, lay, x) {
-    for (const t of y.ticks(3)) {
+    for (const t of ticksOf(y)) {
       const at = y(t);
       g.append('path').attr('d', `M${x.range()[0]} ${at}H${x.range()[1]}`).attr('stroke', t === 0 ? 'var(--edge)' : 'var(--rule)');
       g.append('text').attr('x', lay.marginLeft - 6).attr('y', at).attr('dy', '0.32em').attr('text-anchor', 'end').text(digits(t));
@@ -69,20 +79,21 @@
 
   function nameLevels(svg, g, row, y, lay, right, name, top) {
     if (!lay.beside) {
-      g.append('text').attr('x', 0).attr('y', name + 16).text(row.levels.map((level) => level.text).join(', '));
+      g.append('text').attr('x', 0).attr('y', name + 16).text(row.levels.map((level) => `${level.name}\u00a0${level.text}`).join(', '));
       return;
     }
-    const spots = row.levels.map((level) => ({name: level.text, x: right, y: y(level.value), colour: 'var(--dim)', weight: 0.8}));
+    const spots = row.levels.map((level) => ({name: labelOf(level, row), x: right, y: y(level.value), colour: 'var(--dim)', weight: 0.8}));
     svg.append(() => drawNames(spots, {...lay, marginTop: top - 3, marginBottom: lay.height - top - rowHeight - 3}));
   }
 
-  // Every interval is parted from the next through all rows; in the first period it
-  // is named above them.
+  // Every interval is parted from the next in all rows; in the first period it is
+  // named above them.
   function drawIntervals(svg, data, lay, x) {
     const g = svg.append('g').attr('class', 'intervals').attr('fill', 'none');
     const edges = [...data.intervals.map((part) => part.from), data.period];
     for (const edge of d3.range(periods).flatMap((n) => edges.map((e) => e + n * data.period))) {
-      g.append('path').attr('d', `M${x(edge)} ${lay.marginTop - 6}V${lay.height - lay.marginBottom}`).attr('stroke', 'var(--edge)').attr('stroke-dasharray', '2 3');
+      const strokes = lay.rows.map(({top}) => `M${x(edge)} ${top}v${rowHeight}`);
+      g.append('path').attr('d', `M${x(edge)} ${lay.marginTop - 6}v8${strokes.join('')}`).attr('stroke', 'var(--edge)').attr('stroke-dasharray', '2 3');
     }
     let after = 0;
     for (const part of data.intervals) {

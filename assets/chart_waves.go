@@ -30,9 +30,10 @@ type Wave struct {
 	Levels []Level      `json:"levels"`
 }
 
-// A Level is a figure of a waveform, marked at its height and labelled with its text.
-// Dash is 0 solid, 1 dashed, 2 dotted.
+// A Level is a figure of a waveform, marked at its height and labelled with its name
+// and text, the figure in the row's unit. Dash is 0 solid, 1 dashed, 2 dotted.
 type Level struct {
+	Name  string  `json:"name"`
 	Text  string  `json:"text"`
 	Value float64 `json:"value"`
 	Dash  int     `json:"dash"`

@@ -94,6 +94,9 @@ func TestContrasts(t *testing.T) {
 			need(name, "bg", 3)
 			need(name, "card", 3)
 		}
+		for _, name := range drawn[1:] {
+			need("bg", name, 4.5) // the names within the watt flow
+		}
 		need("bg", "dim", 4.5) // the label of a hovered button
 	}
 }

@@ -15,6 +15,7 @@ import (
 type stretch struct {
 	from, width float64
 	words       string
+	class       string // of a part
 	power       float64
 }
 
@@ -25,11 +26,11 @@ func (p *picture) flow() *view.Flow {
 	q := p.chosen()
 	switch {
 	case q == nil:
-		return &view.Flow{Reason: "it was not kept."}
+		return &view.Flow{Reason: "it was not kept"}
 	case !q.Settled():
 		return &view.Flow{Reason: q.Reason}
 	case !(q.Loss > 0):
-		return &view.Flow{Reason: "nothing is lost."}
+		return &view.Flow{Reason: "nothing is lost"}
 	}
 	unit := wattsOf(q.Loss)
 	f := &view.Flow{Unit: unit.unit, Column: view.Link{Text: "ledger", Href: "#ledger-title"}}
@@ -68,7 +69,7 @@ func ends(f *Figures) (in, out, lost string) {
 func partsOf(f *Figures) (parts []stretch, items [][]stretch) {
 	at := 0.0
 	for _, g := range groups {
-		part := stretch{from: at, words: g.title}
+		part := stretch{from: at, words: g.title, class: g.class}
 		var inside []stretch
 		for _, it := range f.Items {
 			if it.Power > 0 && slices.Contains(g.parts, it.Part) {
@@ -86,7 +87,7 @@ func partsOf(f *Figures) (parts []stretch, items [][]stretch) {
 }
 
 func flowPart(part stretch, items []stretch, unit watts, loss float64) view.FlowPart {
-	v := view.FlowPart{Name: part.words, Class: groupTitled(part.words).class, Figures: flowFigures(part.power, unit, loss)}
+	v := view.FlowPart{Name: part.words, Class: part.class, Figures: flowFigures(part.power, unit, loss)}
 	if part.from > 0 {
 		v.Edge = along(part.from)
 	}
@@ -99,10 +100,6 @@ func flowPart(part stretch, items []stretch, unit watts, loss float64) view.Flow
 		v.Items = append(v.Items, one)
 	}
 	return v
-}
-
-func groupTitled(title string) group {
-	return groups[slices.IndexFunc(groups, func(g group) bool { return g.title == title })]
 }
 
 // flowFigures are what a part or an item loses, and its share of the loss.

@@ -16,13 +16,13 @@ func (p *picture) waves() (*view.Waves, error) {
 	q := p.chosen()
 	switch {
 	case q == nil:
-		return &view.Waves{Reason: "it was not kept."}, nil
+		return &view.Waves{Reason: "it was not kept"}, nil
 	case !q.Settled():
 		return &view.Waves{Reason: q.Reason}, nil
 	}
 	w, fit := budget.Waveforms(p.design, budgetOf(q))
 	if !fit {
-		return &view.Waves{Reason: "the figures kept here are not those of the waveforms that this version draws."}, nil
+		return &view.Waves{Reason: "the figures kept here are not those of the waveforms that this version draws"}, nil
 	}
 	s := scopeOf(w)
 	data := assets.Waves{Title: "Waveforms at " + p.spot.words(p.design), Period: s.time(w.Period),
@@ -143,7 +143,7 @@ func (s scope) row(f budget.Waveform) assets.Wave {
 		w.Points = append(w.Points, [2]float64{s.time(p.Time), round(p.Value/scale.Factor, 6)})
 	}
 	level := func(name string, v float64, dash int) {
-		w.Levels = append(w.Levels, assets.Level{Text: name + "\u00a0" + s.write(f, v) + "\u00a0" + scale.Unit, Value: round(v/scale.Factor, 6), Dash: dash})
+		w.Levels = append(w.Levels, assets.Level{Name: name, Text: s.write(f, v), Value: round(v/scale.Factor, 6), Dash: dash})
 	}
 	level("peak", f.Peak, 2)
 	level("rms", f.RMS, 1)
