@@ -90,7 +90,7 @@ func openGallery(t *testing.T, width int64, scheme string) context.Context {
 		t.Fatal(err)
 	}
 	tab, cancel := chromedp.NewContext(browser(), chromedp.WithNewBrowserContext())
-	ctx, stop := context.WithTimeout(tab, 15*time.Second)
+	ctx, stop := context.WithTimeout(tab, 2*time.Minute)
 	do(t, tab) // binds the tab to the context without the limit
 	heard := listen(tab)
 	t.Cleanup(func() {

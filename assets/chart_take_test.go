@@ -143,7 +143,7 @@ func standsAlone(t *testing.T, name string, content []byte) {
 	t.Helper()
 	tab, cancel := chromedp.NewContext(browser(), chromedp.WithNewBrowserContext())
 	defer cancel()
-	ctx, stop := context.WithTimeout(tab, 15*time.Second)
+	ctx, stop := context.WithTimeout(tab, 2*time.Minute)
 	defer stop()
 	do(t, tab)
 	file := filepath.Join(t.TempDir(), "chart.svg")

@@ -27,13 +27,6 @@ var looks = []struct {
 		h.call(201, "POST", frostSheet+"/revisions", map[string]string{"note": "on paper"})
 		b.open(frostSheet + "/revisions/1/report")
 	}},
-	{"map", func(h *host, b *tab) {
-		d := rough(h.t)
-		h.call(201, "POST", "/designs", designRequest{d})
-		b.open("/designs/4?chart=map")
-		b.wait(mapDrawn)
-	}},
-	{"map on its own", func(_ *host, b *tab) { b.open("/designs/4/map?scale=lin") }},
 	{"sheet with a load profile", func(h *host, b *tab) {
 		b.open(frostSheet)
 		b.click(saying("add a row") + ` && e.id === 'add-profile'`)
