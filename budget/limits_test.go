@@ -197,3 +197,19 @@ func TestErrorsByHand(t *testing.T) {
 		t.Errorf("errors %g W and %+v after %d evaluations, residual %g", b.LossError, b.HeatErrors, b.Iterations, b.Residual)
 	}
 }
+
+// TestWorstFirst mixes the levels and asks for their order, and for the order given
+// within a level.
+func TestWorstFirst(t *testing.T) {
+	var list []observation
+	for i, level := range []Level{Note, Caution, Exceeded, Note, Exceeded, Caution} {
+		list = append(list, observation{Finding: Finding{Level: level, Value: float64(i)}})
+	}
+	var order []float64
+	for _, f := range plain(list) {
+		order = append(order, f.Value)
+	}
+	if diff := cmp.Diff([]float64{2, 4, 1, 5, 0, 3}, order); diff != "" {
+		t.Error(diff)
+	}
+}

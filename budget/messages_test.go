@@ -24,8 +24,8 @@ func says(t *testing.T, list []Finding, words ...string) {
 // TestNumbersInWords reads the figures that findings name, each worked out here.
 func TestNumbersInWords(t *testing.T) {
 	d := quiet()
-	d.Switch.VdsRating = N(64) // 56 V
-	says(t, foundAt(t, d, easy, "blocking_voltage", "switch"), "is 56 V, 88 % of the rated 64 V")
+	d.Switch.VdsRating = N(60) // 56 V
+	says(t, foundAt(t, d, easy, "blocking_voltage", "switch"), "is 56 V, 93 % of the rated 60 V")
 
 	d = quiet()
 	d.Controller.OnTimeMin = N(900e-9)

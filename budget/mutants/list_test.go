@@ -19,13 +19,13 @@ func excused(text string) (reasons map[string]string, err error) {
 		case comment && open:
 			return nil, fmt.Errorf("line %d: a reason within a list of mutants: leave a line blank", i+1)
 		case comment:
-			reason += " " + strings.TrimSpace(words)
-		case strings.TrimSpace(reason) == "":
+			reason = strings.TrimSpace(reason + " " + strings.TrimSpace(words))
+		case reason == "":
 			return nil, fmt.Errorf("line %d: no reason is given", i+1)
 		case reasons[line] != "":
 			return nil, fmt.Errorf("line %d: excused twice", i+1)
 		default:
-			reasons[line], open = strings.TrimSpace(reason), true
+			reasons[line], open = reason, true
 		}
 	}
 	return reasons, nil

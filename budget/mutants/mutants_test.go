@@ -84,27 +84,35 @@ func judge(t *testing.T, f *finder, reasons map[string]string) {
 		noticed, err := c.try(m)
 		took := time.Since(start).Seconds()
 		lock.Lock()
-		switch excuse := reasons[m.key()]; {
-		case err != nil:
+		if err != nil {
 			t.Errorf("%s: %v", m.key(), err)
-		case noticed == "" && excuse == "":
-			tally["NOT NOTICED"]++
-			t.Errorf("no test notices (%.1f s):\n%s", took, m.key())
-		case noticed == "":
-			tally["excused"]++
-		case excuse != "":
-			t.Errorf("%s notices what is excused as: %s\n%s", noticed, excuse, m.key())
-		default:
-			tally["noticed"]++
-			if *say {
-				t.Logf("%s (%.1f s): %s", noticed, took, m.key())
-			}
+			return
+		}
+		what, complaint := verdict(noticed, reasons[m.key()])
+		if tally[what]++; complaint != "" {
+			t.Errorf("%s (%.1f s):\n%s", complaint, took, m.key())
+		} else if *say {
+			t.Logf("%s %s (%.1f s): %s", what, noticed, took, m.key())
 		}
 	})
 	t.Logf("part %s: %d mutants, %v, %.0f s", *part, len(mutants), tally, time.Since(begun).Seconds())
 	if tally["noticed"] == 0 {
 		t.Error("none was noticed: nothing was proved")
 	}
+}
+
+// verdict says what a mutant counts as, and what is wrong with that: one that no test
+// notices needs an excuse, and one that is noticed needs none.
+func verdict(noticed, excuse string) (what, complaint string) {
+	switch {
+	case noticed == "" && excuse == "":
+		return "not noticed", "no test notices"
+	case noticed == "":
+		return "excused", ""
+	case excuse != "":
+		return "noticed", noticed + " notices what is excused as: " + excuse
+	}
+	return "noticed", ""
 }
 
 var lock sync.Mutex

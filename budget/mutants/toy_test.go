@@ -149,3 +149,31 @@ func TestToy(t *testing.T) {
 		t.Error("not noticed:", diff)
 	}
 }
+
+// TestVerdict asks that a mutant is complained of if no test notices it and nothing
+// excuses it, and if one does and something does.
+func TestVerdict(t *testing.T) {
+	for _, c := range []struct{ noticed, excuse, what, complaint string }{
+		{"", "", "not noticed", "no test notices"},
+		{"", "a short cut", "excused", ""},
+		{"TestX", "", "noticed", ""},
+		{"TestX", "a short cut", "noticed", "TestX notices what is excused as: a short cut"},
+	} {
+		if what, complaint := verdict(c.noticed, c.excuse); what != c.what || complaint != c.complaint {
+			t.Errorf("%+v: %q, %q", c, what, complaint)
+		}
+	}
+}
+
+// TestExcuses reads lists, good and bad.
+func TestExcuses(t *testing.T) {
+	got, err := excused("# one\n# reason\nf a: x  →  y\nf b: x  →  y\n\n# another\nf c: x  →  y\n")
+	if diff := cmp.Diff(map[string]string{"f a: x  →  y": "one reason", "f b: x  →  y": "one reason", "f c: x  →  y": "another"}, got); err != nil || diff != "" {
+		t.Error(err, diff)
+	}
+	for _, bad := range []string{"f a: x  →  y", "#\nf a: x  →  y", "# one\nf a: x  →  y\n# two\nf b: x  →  y", "# one\nf a: x  →  y\nf a: x  →  y", "# one\n\nf a: x  →  y"} {
+		if list, err := excused(bad); err == nil {
+			t.Errorf("%q is read as %v", bad, list)
+		}
+	}
+}
