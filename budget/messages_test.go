@@ -33,7 +33,7 @@ func TestNumbersInWords(t *testing.T) {
 	if b.OnTime < 830e-9 || b.OnTime > 850e-9 { // 12 of 48 V at 300 kHz, and a little for the drops
 		t.Fatalf("an on-time of %g s", b.OnTime)
 	}
-	says(t, foundAt(t, d, easy, "modulation", "controller"), "is 84", "ns, the shortest possible 900 ns")
+	says(t, foundAt(t, d, easy, "modulation", "controller"), fmt.Sprintf("is %.3g ns, the shortest possible 900 ns", b.OnTime/1e-9))
 
 	d = quiet()
 	d.Inductor.Inductance = N(5e-6) // 36 V for 12/48 of 1/300 kHz, 6 A of 8 A
@@ -57,6 +57,19 @@ func TestNumbersInWords(t *testing.T) {
 	}
 	if list := foundAt(t, quiet(), Point{61, 8, 25}, "hazard_voltage", ""); len(list) != 1 || list[0].Limit != 60 || list[0].Value != 61 {
 		t.Errorf("%+v, want 61 of 60 V", list)
+	}
+}
+
+// TestSupplyLowest asks a review for the lowest supply of several.
+func TestSupplyLowest(t *testing.T) {
+	d := quiet()
+	d.Drive.FedFrom, d.Drive.VoltageOff = "input", N(-42)
+	points := []Point{{49, 8, 25}, {44, 8, 25}, {46, 8, 25}}
+	for range points {
+		if list := review(t, d, "supply_low", points...); len(list) != 1 || list[0].Value != 44 || list[0].Limit != 50 || list[0].At.Vin != 44 {
+			t.Errorf("%+v, want it at 44 V of 50 V", list)
+		}
+		points = append(points[1:], points[0])
 	}
 }
 

@@ -207,7 +207,7 @@ func (f *finder) binary(p place, n *ast.BinaryExpr) {
 		f.add(p, n.OpPos, end, other.String())
 	}
 	f.edit(p, n.OpPos, end, ",")
-	f.wrap(p, n, fmt.Sprintf("chosen.%s[%s](%d, ", functions[n.Op], p.name(operand), m.id))
+	f.wrap(p, n, fmt.Sprintf("chosen.%s%s(%d, ", functions[n.Op], p.instance(operand), m.id))
 }
 
 func (f *finder) negation(p place, n *ast.UnaryExpr) {
@@ -216,7 +216,7 @@ func (f *finder) negation(p place, n *ast.UnaryExpr) {
 	}
 	m := f.add(p, n.OpPos, n.OpPos+1, "")
 	f.edit(p, n.OpPos, n.OpPos+1, "")
-	f.wrap(p, n, fmt.Sprintf("chosen.Negation[%s](%d, ", p.name(p.typeOf(n)), m.id))
+	f.wrap(p, n, fmt.Sprintf("chosen.Negation%s(%d, ", p.instance(p.typeOf(n)), m.id))
 }
 
 // assignment turns x += y and its like.
@@ -237,7 +237,7 @@ func (f *finder) step(p place, n *ast.IncDecStmt) {
 
 func (f *finder) reassign(p place, x ast.Expr, at token.Pos, sign, other token.Token, rest string) {
 	m := f.add(p, at, at+2, other.String())
-	f.edit(p, at, at+2, fmt.Sprintf("= chosen.%s[%s](%d, %s%s", functions[sign], p.name(p.typeOf(x)), m.id, p.f.source(x.Pos(), x.End(), f.fset), rest))
+	f.edit(p, at, at+2, fmt.Sprintf("= chosen.%s%s(%d, %s%s", functions[sign], p.instance(p.typeOf(x)), m.id, p.f.source(x.Pos(), x.End(), f.fset), rest))
 }
 
 // extreme takes the larger for the smaller.

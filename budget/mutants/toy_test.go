@@ -27,6 +27,15 @@ var room [size]float64
 
 func how(text string) string { return text }
 
+type side int
+
+const right side = 1
+
+func hidden(x side) bool {
+	side := x
+	return side == right
+}
+
 func seen(x, y float64, n int) (float64, int, string) {
 	z := 2*x + y/4
 	z -= slope
@@ -52,6 +61,9 @@ func unseen(x, y float64, n int) (float64, int, string) {
 import "testing"
 
 func TestSeen(t *testing.T) {
+	if !hidden(1) || hidden(2) {
+		t.Error("hidden")
+	}
 	for _, c := range []struct{ x, y float64; n int; z float64; m int }{
 		{2, 8, 7, 8.5, 11}, {2, 8, 8, 8.5, 11}, {8, 2, 7, 19, 10}, {8, 8, 7, 20.5, 10}, {-9, 1, 1, -1, 5}, {90, 4, 1, 100, 4},
 	} {
@@ -70,6 +82,8 @@ const (
 slope: slope = -2.5  →  slope = 2.5
 slope: slope = -2.5  →  slope = -2.525
 size: size = 3  →  size = 4
+right: right side = 1  →  right side = 2
+hidden: return side == right  →  return side != right
 seen: z := 2*x + y/4  →  z := 2*x - y/4
 seen: z := 2*x + y/4  →  z := 2/x + y/4
 seen: z := 2*x + y/4  →  z := 2.02*x + y/4

@@ -54,6 +54,16 @@ func (p place) name(t types.Type) string {
 	})
 }
 
+// instance writes the type that a function of the package chosen is used with, where
+// its arguments don't tell: those of a type with a name do, and that name may mean
+// something else where they stand.
+func (p place) instance(t types.Type) string {
+	if _, basic := t.(*types.Basic); basic {
+		return "[" + p.name(t) + "]"
+	}
+	return ""
+}
+
 // named is a constant that the code declares: its uses are switched, since its
 // declaration can't be.
 type named struct {
@@ -172,7 +182,7 @@ func (f *finder) use(p place, mutants []*mutant, values []constant.Value) {
 	before, after := "", ""
 	for i, m := range mutants {
 		if !m.alone {
-			before = fmt.Sprintf("chosen.Of[%s](%d, %s", p.name(t), m.id, before)
+			before = fmt.Sprintf("chosen.Of%s(%d, %s", p.instance(t), m.id, before)
 			after += ", " + textOf(values[i], isFloat(t)) + ")"
 		}
 	}
