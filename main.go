@@ -28,7 +28,7 @@ import (
 // evidence is what the figures were checked against, which a page shows: the files
 // that the tests read too.
 //
-//go:embed testdata/published testdata/measured
+//go:embed testdata/published testdata/measured testdata/exact
 var evidence embed.FS
 
 // The exit codes.

@@ -11,10 +11,12 @@ import (
 	"testing"
 	"testing/fstest"
 
+	"github.com/google/go-cmp/cmp"
 	"golang.org/x/net/html"
 
 	"lossbook/budget"
 	"lossbook/budget/proof"
+	"lossbook/web/view"
 )
 
 func proven(t *testing.T) *evidence {
@@ -71,7 +73,7 @@ func TestWeightsCheckCanFail(t *testing.T) {
 		if !strings.Contains(string(text), old) {
 			t.Fatalf("there is no %s", old)
 		}
-		e, err := gather(fstest.MapFS{checksFile: {Data: []byte(strings.Replace(string(text), old, wrong, 1))}, coreFile: file(t, coreFile), casesFile: file(t, casesFile)})
+		e, err := gather(fstest.MapFS{checksFile: {Data: []byte(strings.Replace(string(text), old, wrong, 1))}, coreFile: file(t, coreFile), casesFile: file(t, casesFile), boundsFile: file(t, boundsFile)})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -184,9 +186,9 @@ func TestCorrectDigits(t *testing.T) {
 // TestEvidenceRefused leaves something out or breaks it.
 func TestEvidenceRefused(t *testing.T) {
 	whole := func() fstest.MapFS {
-		return fstest.MapFS{checksFile: file(t, checksFile), coreFile: file(t, coreFile), casesFile: file(t, casesFile)}
+		return fstest.MapFS{checksFile: file(t, checksFile), coreFile: file(t, coreFile), casesFile: file(t, casesFile), boundsFile: file(t, boundsFile)}
 	}
-	for _, name := range []string{checksFile, coreFile, casesFile} {
+	for _, name := range []string{checksFile, coreFile, casesFile, boundsFile} {
 		lacking, broken := whole(), whole()
 		delete(lacking, name)
 		broken[name] = &fstest.MapFile{Data: []byte("{")}
@@ -196,20 +198,24 @@ func TestEvidenceRefused(t *testing.T) {
 			}
 		}
 	}
-	broken := whole()
-	broken[boundsFile] = &fstest.MapFile{Data: []byte("{")}
-	if _, err := gather(broken); err == nil {
-		t.Error("broken bounds were read")
+}
+
+// TestBounds gathers them by hand.
+func TestBounds(t *testing.T) {
+	v := boundsView([]bound{
+		{Quantity: "peak", Topology: "boost", Domain: "small", N: 1200, Worst: 0.003, Median: 1e-4},
+		{Quantity: "rms", Topology: "boost", Domain: "small", N: 1200, Worst: 0, Median: 0},
+		{Quantity: "peak", Topology: "boost", Domain: "large", N: 2, Worst: 0.2101, Median: 0.1},
+		{Quantity: "peak", Topology: "buck", Domain: "small", N: 34, Worst: 0.00201, Median: 2.01e-4},
+	})
+	want := view.BoundTable{Heads: []view.BoundHead{{Domain: "small", Stages: "1234 stages"}, {Domain: "large", Stages: "2 stages"}},
+		Lines: []view.BoundLine{{Quantity: "peak", Cells: []view.BoundCell{{Worst: "0.3", Half: "0.021"}, {Worst: "22", Half: "10"}}}, {Quantity: "rms", Cells: []view.BoundCell{{Worst: "0", Half: "0"}, {Worst: "0", Half: "0"}}}}}
+	if d := cmp.Diff(want, v); d != "" {
+		t.Error(d)
 	}
-	bounded := whole()
-	bounded[boundsFile] = &fstest.MapFile{Data: []byte(`[{"quantity": "peak", "topology": "boost", "worst": 0.003, "median": 1e-4, "n": 1234, "domain": "small drops"}]`)}
-	e, err := gather(bounded)
-	if err != nil {
-		t.Fatal(err)
-	}
-	a := e.model()
-	if len(a.Bounds) != 1 || a.Bounds[0].Quantity != "boost, peak" || a.Bounds[0].Worst != "0.3" || a.Bounds[0].Median != "0.01" || a.Bounds[0].Designs != "1\u202f234" {
-		t.Errorf("%+v", a.Bounds)
+	shown := boundsView(proven(t).bounds)
+	if len(shown.Heads) != 4 || len(shown.Lines) != 12 || shown.Heads[0].Stages != "612 stages" {
+		t.Errorf("%d domains and %d quantities: %+v", len(shown.Heads), len(shown.Lines), shown.Heads)
 	}
 }
 

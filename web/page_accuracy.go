@@ -38,16 +38,13 @@ func (s *Server) accuracyPage(w http.ResponseWriter, r *http.Request) error {
 }
 
 func (e *evidence) model() view.Accuracy {
-	a := view.Accuracy{Page: frame("How far the figures were checked"), Summary: e.summary(), Core: coreView(e.core), Cases: e.cases.words()}
+	a := view.Accuracy{Page: frame("How far the figures were checked"), Summary: e.summary(), Core: coreView(e.core), Cases: e.cases.words(), Bounds: boundsView(e.bounds)}
 	for _, r := range e.results {
 		if n := len(a.Groups); n == 0 || a.Groups[n-1].Title != r.Group {
 			a.Groups = append(a.Groups, view.CheckGroup{ID: "group-" + strconv.Itoa(n+1), Title: r.Group})
 		}
 		group := &a.Groups[len(a.Groups)-1]
 		group.Checks = append(group.Checks, checkView(r))
-	}
-	for _, b := range e.bounds {
-		a.Bounds = append(a.Bounds, b.line())
 	}
 	a.Items, a.Findings = e.covers()
 	for _, o := range e.file.LeftOut {
@@ -179,10 +176,51 @@ func (a agreement) words() string {
 		grouped(strconv.Itoa(a.Figures)), a.Files, strconv.FormatFloat(a.Worst, 'g', 2, 64))
 }
 
-func (b bound) line() view.BoundLine {
-	topology, _ := strings.CutSuffix(optionLabel("topology", b.Topology), " ")
-	return view.BoundLine{Quantity: joined(", ", topology, b.Quantity), Worst: strconv.FormatFloat(100*b.Worst, 'g', 2, 64),
-		Median: strconv.FormatFloat(100*b.Median, 'g', 2, 64), Designs: grouped(strconv.Itoa(b.N)), Domain: b.Domain}
+// boundsView gathers the bounds of all topologies and modes by quantity and domain, in
+// the order in which both come.
+func boundsView(list []bound) (v view.BoundTable) {
+	var quantities, domains []string
+	for _, b := range list {
+		quantities, domains = including(quantities, b.Quantity), including(domains, b.Domain)
+	}
+	for _, d := range domains {
+		_, _, stages := worstOf(list, quantities[0], d)
+		v.Heads = append(v.Heads, view.BoundHead{Domain: d, Stages: plural(stages, "stage", "stages")})
+	}
+	for _, q := range quantities {
+		line := view.BoundLine{Quantity: q}
+		for _, d := range domains {
+			worst, half, _ := worstOf(list, q, d)
+			line.Cells = append(line.Cells, view.BoundCell{Worst: twoDigits(100 * worst), Half: twoDigits(100 * half)})
+		}
+		v.Lines = append(v.Lines, line)
+	}
+	return v
+}
+
+func including(list []string, s string) []string {
+	if slices.Contains(list, s) {
+		return list
+	}
+	return append(list, s)
+}
+
+func worstOf(list []bound, quantity, domain string) (worst, half float64, stages int) {
+	for _, b := range list {
+		if b.Quantity == quantity && b.Domain == domain {
+			worst, half, stages = max(worst, b.Worst), max(half, b.Median), stages+b.N
+		}
+	}
+	return worst, half, stages
+}
+
+// twoDigits rounds up: a bound must hold.
+func twoDigits(v float64) string {
+	if v == 0 {
+		return "0"
+	}
+	unit := math.Pow10(int(math.Floor(math.Log10(v))) - 1)
+	return strconv.FormatFloat(round(math.Ceil(v/unit-1e-9)*unit, 2), 'f', -1, 64)
 }
 
 // covers lists every item and every finding that the data knows, with the checks

@@ -7,7 +7,7 @@ type Accuracy struct {
 	Groups   []CheckGroup
 	Core     CoreLoss
 	Cases    string
-	Bounds   []BoundLine // none where none were measured
+	Bounds   BoundTable
 	Items    []Cover
 	Findings []Cover
 	LeftOut  []Method
@@ -50,8 +50,25 @@ type CoreLoss struct {
 // CoreLine is one duty of the flux.
 type CoreLine struct{ Duty, Points, Mean, Worst, Note string }
 
-// BoundLine is how far a current may be from the exact one.
-type BoundLine struct{ Quantity, Worst, Median, Designs, Domain string }
+// BoundTable is how far the figures are from those of exact currents: a column for
+// each kind of stage.
+type BoundTable struct {
+	Heads []BoundHead
+	Lines []BoundLine
+}
+
+// BoundHead is a kind of stage and how many were tried.
+type BoundHead struct{ Domain, Stages string }
+
+// BoundLine is one quantity.
+type BoundLine struct {
+	Quantity string
+	Cells    []BoundCell
+}
+
+// BoundCell is the worst of all stages, and what half of any topology and mode keep
+// within.
+type BoundCell struct{ Worst, Half string }
 
 // Cover names an item or a finding, with its checks or the reason why there is none.
 type Cover struct {
