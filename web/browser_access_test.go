@@ -237,7 +237,7 @@ func TestNumbersStandWhereNoChartIsDrawn(t *testing.T) {
 	b := serve(t).tab()
 	b.scriptless()
 	b.open(frostSheet)
-	want(b, `document.querySelectorAll('loss-chart').length`, 2)
+	want(b, `document.querySelectorAll('loss-chart').length`, 3)
 	want(b, `[...document.querySelectorAll('loss-chart')].some(c => c.checkVisibility())`, false)
 	want(b, `[...document.querySelectorAll('figure table')].every(c => c.checkVisibility({contentVisibilityAuto: true}) && c.clientHeight > 100)`, true)
 	b.picture("sheet-scriptless")
