@@ -13,7 +13,7 @@ import (
 	"github.com/chromedp/chromedp"
 )
 
-const mapDrawn = `document.querySelectorAll('#map loss-chart .shades rect').length > 50 && !document.querySelector('loss-later').hasAttribute('data-late')`
+const mapDrawn = `document.querySelectorAll('#map loss-chart .shades rect').length > 50 && !document.querySelector('loss-later').matches(':state(late)')`
 
 // The map is opened by keyboard, stands in the address, is read with the arrow keys,
 // and follows an edit after the edit's own answer.
@@ -89,7 +89,7 @@ func TestMapDoesNotHoldUpAnEdit(t *testing.T) {
 		const real = window.fetch;
 		window.fetch = (address, ...rest) => String(address).includes('/map') ? new Promise((go) => { window.letGo = () => go(real(address, ...rest)) }) : real(address, ...rest) }`)
 	b.edits()
-	b.wait(`window.letGo && document.querySelector('loss-later').hasAttribute('data-late')`)
+	b.wait(`window.letGo && document.querySelector('loss-later').matches(':state(late)')`)
 	want(b, `document.querySelectorAll('#map loss-chart .shades rect').length > 50`, true)
 	evaluate[chromedp.Void](b, `letGo()`)
 	b.wait(mapDrawn)
