@@ -86,6 +86,7 @@ func (p *promised) saveAndKill(t *testing.T, file string, run int) {
 		})
 	}
 	savers.Wait()
+	server.Process.Kill() // also where no save was acknowledged
 	server.Wait()
 }
 
