@@ -38,7 +38,7 @@ func serveUntilKilled(file string) error {
 	if err != nil {
 		return err
 	}
-	handler, err := New(Config{Store: kept, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: listener.Addr().String()})
+	handler, err := New(Config{Store: kept, Log: slog.New(slog.NewTextHandler(io.Discard, nil)), Host: listener.Addr().String(), Evidence: os.DirFS("../testdata")})
 	if err != nil {
 		return err
 	}
