@@ -36,7 +36,7 @@ const foldedFrom = 20
 func (c *comparison) model() (view.Compare, error) {
 	v := view.Compare{Title: c.title(), File: slug(c.title()), Sides: c.sideViews(), Basis: c.basis(), Views: c.views(), Rule: c.rules(), Gaps: c.gaps(),
 		Losses: c.lossTable(c.load), Loads: c.overLoads(), Zero: c.idleWords(), Outside: c.outside(), CSV: "/compare.csv" + c.query()}
-	v.Page = frame(v.Title)
+	v.Page, v.Foot = frame(v.Title), v.Title+" · "+keptWhen(v.Sides)
 	v.Choose = view.Link{Text: "choose others", Href: chooserAddress(c.pins)}
 	conditions := conditionsAmong(c.sides)
 	v.Differ, v.Same = conditionWords(conditions)
@@ -58,6 +58,17 @@ func (c *comparison) model() (view.Compare, error) {
 	var err error
 	v.Charts, err = c.charts()
 	return v, err
+}
+
+// keptWhen says when the revisions were kept, each moment once.
+func keptWhen(sides []view.CompareSide) string {
+	var list []string
+	for _, s := range sides {
+		if !slices.Contains(list, s.When) {
+			list = append(list, s.When)
+		}
+	}
+	return listed(list)
 }
 
 func (c *comparison) title() string {

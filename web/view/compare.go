@@ -5,6 +5,7 @@ type Compare struct {
 	File       string // what names of its files begin with
 	Page       Page
 	Title      string
+	Foot       string // of every printed page
 	Sides      []CompareSide
 	Choose     Link   // where others are chosen
 	Nothing    string // said when nothing differs

@@ -60,7 +60,7 @@ func ledger(l Ledger, linkable bool) templ.Component {
 			return templ_7745c5c3_Err
 		}
 		if len(l.Take) > 0 {
-			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 4, "<span class=\"take\">take along: ")
+			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 4, "<span class=\"take noprint\">take along: ")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err
 			}
