@@ -21,26 +21,29 @@
     if (entry(target)) untaken.set(target.name, {text: target.value, caret: target.selectionStart});
   }, true);
 
-  // An answer that replaces the entries leaves open what was open, where it stood, and
-  // what was typed since it was asked for.
+  // An answer that replaces entries leaves open what was open, where it stood, and what
+  // was typed since it was asked for.
   let open = [];
   let scrolled = 0;
 
   document.addEventListener('htmx:before:response', ({detail: {ctx}}) => {
+    open = Array.from(document.querySelectorAll('details[id][open]'), (details) => details.id);
     if (!fields()) return;
     if (ctx.response.status === 200 || ctx.response.status === 422) {
       for (const [name, {text}] of untaken) {
         if (ctx.request.body?.get?.(name) === text) untaken.delete(name);
       }
     }
-    open = Array.from(fields().querySelectorAll('details[open]'), (details) => details.id);
     scrolled = document.querySelector('.inputs').scrollTop;
   });
 
   // Right behind the swap, before another key can be pressed.
   document.addEventListener('htmx:before:settle', ({target}) => {
+    for (const id of open) {
+      const details = document.getElementById(id);
+      if (details && target.contains(details)) details.open = true;
+    }
     if (target !== fields()) return;
-    for (const id of open) document.getElementById(id)?.toggleAttribute('open', true);
     for (const [name, {text, caret}] of untaken) {
       const input = named(name);
       if (!input) untaken.delete(name);

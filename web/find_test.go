@@ -64,7 +64,7 @@ func TestEveryEntryIsFound(t *testing.T) {
 	if want := fields + 1 + len(profileColumns); len(links) != want || !strings.Contains(p.words(), plural(want, "entry", "entries")) {
 		t.Errorf("%d entries are listed, want %d", len(links), want)
 	}
-	if got := p.all(withClass("found"))[0]; !strings.Contains(words(got), "Synchronous rectifier , with a synchronous rectifier") {
+	if got := p.all(withClass("found"))[0]; !strings.Contains(words(got), "Synchronous rectifier, with a synchronous rectifier") {
 		t.Error("it is not said how the other rectifier's entries are reached")
 	}
 	seen := map[string]bool{}

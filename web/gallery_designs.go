@@ -67,7 +67,7 @@ func extremeDesign() (*budget.Design, error) {
 	for path, text := range map[string]string{
 		"name": solidText, "note": longText, "switch.part": solidText, "diode.part": longText, "frequency": "1.234567 Hz", "inductor.inductance": "12.34567 kH",
 		"input.min": "1.0000001 kV", "input.nominal": "1.0000002 kV", "input.max": "1.0000003 kV", "output.voltage": "1234.567", "output.current": "1.234567 nA",
-		"switch.vds_rating": "1", "diode.v_rrm": "1", "ambient": "-271.5",
+		"switch.vds_rating": "1", "diode.v_rrm": "1", "ambient": "-54.321",
 	} {
 		t[path] = text
 	}

@@ -96,11 +96,11 @@ func TestGalleryHolds(t *testing.T) {
 	}
 	h := &host{t: t, gallery: true}
 	h.serve()
-	b := h.tab()
 	seen := 0
 	for _, e := range exhibits {
-		b.size(1440, 900, 1)
-		b.open("/gallery/" + e.name)
+		b := h.tab()
+		b.do(chromedp.Navigate("http://" + h.address + "/gallery/" + e.name))
+		b.wait(`document.readyState === 'complete' && [...document.querySelectorAll('loss-chart')].every(c => c.textContent.trim() || !c.clientWidth)`) // drawn, or why not
 		seen++
 		if evaluate[bool](b, `'__pwned' in window || [...document.querySelectorAll('img, [onerror], [onload], script:not([src])')].length > 0`) {
 			t.Errorf("%s: a text became markup", e.name)

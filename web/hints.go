@@ -15,8 +15,8 @@ import (
 var hints = map[string]string{
 	"list": "Lossbook shows where every watt of a DC-DC converter goes. Open a sample and change a value, or start a design of your own below " +
 		"from what it has to do. All of it stays on this machine.",
-	"sheet": "Type values as on a schematic (4k7, 22u, 11m): they are kept as you type, the budget follows, and Ctrl+Z takes any edit back. " +
-		"A figure of the ledger opens how it came about. Keep a revision before you try something, and the sheet says what the change did.",
+	"sheet": "Type values as on a schematic (4k7, 22u): the budget follows, and Ctrl+Z takes any edit back. " +
+		"A figure of the ledger opens how it came about. Keep a revision first, and the sheet says what a change did.",
 }
 
 // hintFor is a page's hint; to is where putting it away leads without a script.

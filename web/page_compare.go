@@ -125,7 +125,7 @@ func (c *comparison) sideViews() []view.CompareSide {
 
 // views offer other points.
 func (c *comparison) views() view.CompareViews {
-	v := view.CompareViews{Vins: c.vinLinks(), Loads: c.loadLinks(), Action: "/compare", Key: formKey(c.query())}
+	v := view.CompareViews{Vins: c.vinLinks(), Loads: c.loadLinks(), Action: "/compare"}
 	for _, o := range c.carried() {
 		if o[0] == "vin" { // the form asks for it
 			continue

@@ -77,10 +77,6 @@ func (s *sheet) entryAddress(q url.Values, to string) string {
 // stepsOf words where undo and redo lead, and what has just been done if that is
 // true. The place is the first entry that this has changed.
 func (s *sheet) stepsOf() (v view.Steps, place string, err error) {
-	now, err := readDraft(s.kept.Draft)
-	if err != nil {
-		return v, "", err
-	}
 	// What was undone lies ahead, what was redone behind.
 	for _, side := range []struct {
 		kept []byte
@@ -90,6 +86,10 @@ func (s *sheet) stepsOf() (v view.Steps, place string, err error) {
 	}{{s.steps.Redo, &v.Redo, undone, "Undone"}, {s.steps.Undo, &v.Undo, redone, "Redone"}} {
 		if side.kept == nil {
 			continue
+		}
+		now, err := readDraft(s.kept.Draft)
+		if err != nil {
+			return v, "", err
 		}
 		t, err := readDraft(side.kept)
 		if err != nil {

@@ -70,7 +70,7 @@ func TestEveryEditCanBeUndone(t *testing.T) {
 			s.edits(map[string]string{"do": "add:profile"})
 			s.edits(map[string]string{"profile[0].load": "1", "profile[0].hours": "8"})
 		}, "Load profile: other values", "f-profile[0].load"},
-		"the ripple ratio": {func(s *site) { s.edits(map[string]string{rippleRatio: "0.4"}) }, "Ripple ratio 0.4 → blank", "f-" + rippleRatio},
+		"the ripple ratio": {func(s *site) { s.edits(map[string]string{rippleRatio: "0.4"}) }, "Ripple ratio wanted 0.4 → blank", "f-" + rippleRatio},
 		"another name": {func(s *site) { s.moved(s.send("/designs/1/rename", url.Values{"name": {"Mast"}})) },
 			"Name Mast → Night-frost mast, siren and strobe rail", "f-name"},
 		"a script's change": {func(s *site) {

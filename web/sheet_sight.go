@@ -153,7 +153,7 @@ func drawnLoads() []float64 {
 
 // views draws the choice of what is looked at.
 func (s spot) views(d *budget.Design, base string, typed bool, vins []voltage) view.Views {
-	v := view.Views{Href: base, Key: formKey(s.address("")), Typed: typed, Scale: s.scale, Working: s.working, Chart: s.chart, At: s.words(d)}
+	v := view.Views{Href: base, Typed: typed, Scale: s.scale, Working: s.working, Chart: s.chart, At: s.words(d)}
 	for _, l := range vins {
 		text := quantity.Format(l.vin, "V")
 		v.Vins = append(v.Vins, view.Link{Text: text, Href: s.atVin(text).address(base), Here: l.vin == s.vin})
@@ -168,9 +168,6 @@ func (s spot) views(d *budget.Design, base string, typed bool, vins []voltage) v
 	}
 	return v
 }
-
-// formKey is the id of a form that belongs to one view alone.
-func formKey(view string) string { return "at-" + url.QueryEscape(view) }
 
 // words name the point of the large figures.
 func (s spot) words(d *budget.Design) string {

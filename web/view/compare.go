@@ -49,7 +49,6 @@ type CompareViews struct {
 	Carry  []Option // what else the address holds: name and value
 	Vin    Field
 	Action string
-	Key    string // of the form: another one for each view, since a swap keeps what stands in inputs
 }
 
 // CompareTable has a row a figure, and for each revision a cell.

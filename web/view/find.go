@@ -23,3 +23,11 @@ type Found struct {
 	ID                       string // in the list
 	Href, To                 string // its address, and its id on the sheet
 }
+
+// Place is the part that it belongs to, and when it is shown, if that is not now.
+func (f Found) Place() string {
+	if f.Away == "" {
+		return f.Part
+	}
+	return f.Part + ", " + f.Away
+}

@@ -85,7 +85,6 @@ type Answers struct {
 // Views are the choices of what is shown, kept in the address.
 type Views struct {
 	Href    string // where the form asks
-	Key     string // of the form: another one for each view, since a swap keeps what stands in inputs
 	Typed   bool   // any voltage and ambient may be typed, not only those listed
 	Vins    []Link
 	Vin     Field
