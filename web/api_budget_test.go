@@ -122,7 +122,7 @@ func TestUnsettledPointHasNoFigures(t *testing.T) {
 			t.Errorf("%s is absent", name)
 		}
 	}
-	if got[1]["state"] != "settled" || len(got[1]) != 22 {
+	if got[1]["state"] != "settled" || len(got[1]) != 23 {
 		t.Errorf("%d members: %v", len(got[1]), got[1])
 	}
 }

@@ -207,7 +207,7 @@ func TestLayoutHolds(t *testing.T) {
 	b := serve(t).visit("/")
 	want(b, `[...document.querySelectorAll('table.list .row')].every(r => r.clientHeight < 40)`, true)
 	b.open(frostSheet)
-	for _, width := range []int64{320, 1000} {
+	for _, width := range []int64{320, 400} {
 		b.size(width, 800, 1)
 		b.wait(`(s => s.scrollWidth > s.clientWidth + 50)(document.querySelector('.scroll:has(.ledger)'))`)
 		evaluate[chromedp.Void](b, `document.querySelector('.scroll:has(.ledger)').scrollLeft = 300`)
