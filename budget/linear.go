@@ -84,13 +84,6 @@ func (v unknowns) plus(w unknowns) unknowns {
 	return v
 }
 
-func (v unknowns) minus(w unknowns) unknowns {
-	for i := range v {
-		v[i] -= w[i]
-	}
-	return v
-}
-
 func (v unknowns) scaled(k float64) unknowns {
 	for i := range v {
 		v[i] *= k

@@ -175,7 +175,7 @@ func TestDeepSaturation(t *testing.T) {
 		sw, drive := timed(1e-12, 1e-12, nothing)
 		d := sheet("buck", 48, 12, load, f, sw, drive, nothing)
 		l0 := 9 / f / load * c.between(0.5, 20)
-		inductance := func(i float64) float64 { return l0 }
+		var inductance func(i float64) float64
 		if d.Inductor.Inductance = N(l0); seed%2 == 0 {
 			sat, drop := load*c.between(0.1, 1.5), c.between(0.1, 0.6)
 			d.Inductor.ISat, d.Inductor.SatDrop = N(sat), N(drop)
