@@ -91,11 +91,11 @@ func TestEveryEntryIsFound(t *testing.T) {
 
 func TestFindKeepsTheView(t *testing.T) {
 	s := seeded(t)
-	p := s.open(200, "/designs/1?vin=11&load=50")
+	p := s.open(200, "/designs/1?vin=11&load=50&chart=map")
 	q := p.form("find", map[string]string{"q": "dcr"})
 	p = s.open(200, attr(p.one("find"), "action")+"?"+q.Encode())
 	links := p.all(func(n *html.Node) bool { return n.Data == "a" && strings.Contains(attr(n, "href"), "#f-inductor.dcr") })
-	if len(links) != 1 || !strings.HasPrefix(attr(links[0], "href"), "/designs/1?load=50&vin=11&show=") {
+	if len(links) != 1 || !strings.HasPrefix(attr(links[0], "href"), "/designs/1?chart=map&load=50&vin=11&show=") {
 		t.Errorf("%d links to the entry", len(links))
 	}
 	if got := attr(p.one("find-q"), "value"); got != "dcr" {
